@@ -35,6 +35,8 @@ export async function up(knex: Knex): Promise<void> {
       trend text not null check (trend in ('rising', 'falling', 'level', 'unclear')),
       failures integer not null check (failures >= 0),
       caution_codes text[] not null,
+      -- The few numbers that lists show and sort by.
+      summary jsonb not null,
       -- Everything else that went into the assessment and came out of it; its shape is checked on reading.
       detail jsonb not null,
       unique (run_id, class_id)
