@@ -1,0 +1,73 @@
+import { z } from 'zod';
+import type { ClassSettings } from '~/models/asset-classes.server';
+import { moneyFieldText, parseMoney } from '~/models/money';
+
+const itemName = z
+  .string({ error: 'Say what one of them is called.' })
+  .trim()
+  .min(1, 'Say what one of them is called.')
+  .max(80, 'Keep this to 80 characters.');
+
+const modeName = z
+  .string({ error: 'Give the mode a name.' })
+  .trim()
+  .min(1, 'Give the mode a name.')
+  .max(120, 'Keep the name to 120 characters.');
+
+/** Everything the settings page can send; costs are in the major unit of the currency, with decimals. */
+export function settingsFormSchema(currency: string) {
+  const cost = z
+    .string()
+    .trim()
+    .optional()
+    .transform((text, context) => {
+      if (!text) return null;
+      const minor = parseMoney(text, currency);
+      if (minor !== undefined) return minor;
+      context.addIssue({
+        code: 'custom',
+        message: `Write an amount such as ${moneyFieldText(125_050, currency)}, without separators between thousands.`,
+      });
+      return z.NEVER;
+    });
+  return z.discriminatedUnion('intent', [
+    z.object({
+      intent: z.literal('save'),
+      version: z.number().int(),
+      name: z
+        .string({ error: 'Give the class a name.' })
+        .trim()
+        .min(1, 'Give the class a name.')
+        .max(120, 'Keep the name to 120 characters.'),
+      itemSingular: itemName,
+      itemPlural: itemName,
+      clock: z.enum(['calendar-days', 'operating-hours'], { error: 'Choose what its age is counted in.' }),
+      criticality: z.number({ error: 'Choose how much it matters.' }).int().min(1).max(4),
+      statutory: z.boolean().default(false),
+      endangersPeople: z.boolean().default(false),
+      hiddenFailures: z.boolean().default(false),
+      plannedCost: cost,
+      failureCost: cost,
+      confirm: z.array(z.enum(['statutory-off', 'endangers-people-off', 'clock'])).default([]),
+    }),
+    z.object({ intent: z.literal('add-mode'), modeName }),
+    z.object({ intent: z.literal('rename-mode'), modeId: z.uuid(), seenName: z.string(), modeName }),
+  ]);
+}
+
+export type SettingsForm = Extract<z.output<ReturnType<typeof settingsFormSchema>>, { intent: 'save' }>;
+
+export function settingsOfForm(form: SettingsForm): ClassSettings {
+  return {
+    name: form.name,
+    itemSingular: form.itemSingular,
+    itemPlural: form.itemPlural,
+    clock: form.clock,
+    criticality: form.criticality,
+    statutory: form.statutory,
+    endangersPeople: form.endangersPeople,
+    hiddenFailures: form.hiddenFailures,
+    plannedCostMinor: form.plannedCost,
+    failureCostMinor: form.failureCost,
+  };
+}
