@@ -1,0 +1,86 @@
+import type { ClassFigures } from '~/advice/class-figures';
+import { clockUnit } from '~/advice/clock-unit';
+import type { Conclusion } from '~/advice/conclusion';
+import type { Findings } from '~/advice/findings';
+import { AgeRankStrip } from '~/charts/age-rank-strip';
+import { HazardByAgeChart } from '~/charts/hazard-by-age-chart';
+import { FigureList } from '../figure-list';
+import { formatClock, formatFixed, formatP } from '../format';
+import { QuestionSection } from '../question-section';
+import { VERDICT_COLOUR } from '../verdict';
+import { ShapeEstimate } from './shape-estimate';
+
+interface QuestionAgeProps {
+  conclusion: Pick<Conclusion, 'answers' | 'verdict'>;
+  findings: Pick<Findings, 'clock' | 'life'>;
+  /** The strip's marks; `day` in words, for the table behind. */
+  ageRank: {
+    marks: readonly { share: number; day: string }[];
+    meanShare: number | null;
+    z: number | null;
+    p: number | null;
+    weightless: number;
+  };
+  figures: ClassFigures['hazard'];
+  itemSingular: string;
+}
+
+/** Question 2: do the old ones go first? */
+export function QuestionAge(props: QuestionAgeProps) {
+  const { conclusion, findings, ageRank, figures, itemSingular } = props;
+  const { fit, meanLife, tenthGone, memorylessTest } = findings.life;
+  const unit = clockUnit(findings.clock);
+  const { short, sentence } = conclusion.answers.age;
+  const inClock = (value: number | null) => (value === null ? 'not known' : formatClock(value, unit));
+  return (
+    <QuestionSection
+      id="old-ones-first"
+      title="2 · Do the old ones go first?"
+      answer={<span style={{ color: VERDICT_COLOUR[conclusion.verdict] }}>{short}</span>}
+      words={
+        <>
+          <p>{sentence}</p>
+          <p className="text-grey mt-2 text-[0.92rem]">
+            Each mark is one failure, placed by how many of its peers were younger that day. If age did not
+            matter they would lie level.
+          </p>
+          <FigureList
+            items={[
+              { name: 'Shape β', value: <ShapeEstimate fit={fit} /> },
+              { name: 'Characteristic life', value: inClock(fit.kind === 'fit' ? fit.scale : null) },
+              { name: 'Mean life (MTTF)', value: inClock(meanLife) },
+              { name: 'One in ten gone by', value: inClock(tenthGone) },
+              {
+                name: 'Against a constant rate',
+                value:
+                  memorylessTest === null
+                    ? 'not known'
+                    : `likelihood ratio ${formatFixed(memorylessTest.statistic, 2)}, ${formatP(memorylessTest.p)}`,
+              },
+              {
+                name: 'Age-rank z',
+                value:
+                  ageRank.z === null || ageRank.p === null
+                    ? 'not known'
+                    : `${formatFixed(ageRank.z, 2)}, ${formatP(ageRank.p)}`,
+              },
+            ]}
+          />
+        </>
+      }
+    >
+      <AgeRankStrip
+        marks={ageRank.marks.map(({ share, day }) => ({ share, label: day }))}
+        meanShare={ageRank.meanShare ?? 0.5}
+        verdict={conclusion.verdict}
+        weightlessCount={ageRank.weightless}
+      />
+      <HazardByAgeChart
+        {...figures}
+        ageUnit={unit}
+        itemNoun={itemSingular}
+        rateUnit={unit === 'hours' ? 'failures per thousand hours' : `failures per ${itemSingular}-year`}
+      />
+    </QuestionSection>
+  );
+}

@@ -1,0 +1,112 @@
+import { conclude, decideRun, runTestsOf, type RunDecisions, type RunTests } from '~/advice/conclude';
+import { computeFindings } from '~/advice/compute-findings';
+import type { ClassMarks } from '~/advice/class-facts';
+import {
+  dropUnfinishedAssessments,
+  finishRun,
+  insertAssessment,
+  rejudgeAssessment,
+} from '~/models/assessments.server';
+import { layOutClass, listClassIds, readClassRecords } from '~/models/class-evidence.server';
+import { failRun, recordProblem, startRun } from '~/models/job-runs.server';
+import { withJobLock } from '~/models/job-lock.server';
+import type { Database } from '../db/connection';
+
+export const nightlyJob = 'nightly';
+
+export type NightlyOutcome =
+  | { state: 'finished'; runId: string; classes: number; problems: number }
+  /** Another process is at it; nothing was done. */
+  | { state: 'busy' };
+
+interface NightlyOptions {
+  /** The last complete day whose records count, 'YYYY-MM-DD'. */
+  asOf: string;
+  timeZone: string;
+  /** Told about each class that could not be computed. */
+  onProblem?: (classId: string, reason: string) => void;
+}
+
+/** Judged as if every test held up: most classes are not touched by what the others show. */
+const allHold: RunDecisions = { wearOutPasses: true, laplacePasses: true };
+
+/**
+ * Assesses every class as of a day and puts the results in force together.
+ *
+ * Records are read class by class within one snapshot, so that memory does not grow with the number of
+ * classes and all classes are seen at the same moment. A class that cannot be computed is recorded with
+ * its reason and keeps its previous assessment. If the process dies, the previous night stays in force.
+ * The same records as of the same day give the same numbers to the last bit.
+ */
+export async function runNightly(db: Database, options: NightlyOptions): Promise<NightlyOutcome> {
+  const { asOf } = options;
+  const outcome = await withJobLock(db, nightlyJob, async (snapshot) => {
+    const runId = await startRun(db, nightlyJob, asOf);
+    try {
+      await dropUnfinishedAssessments(db);
+      const { computed, problems } = await assessAll(db, snapshot, { runId, asOf }, options);
+      await settleRun(db, { runId, asOf }, computed);
+      return { state: 'finished' as const, runId, classes: computed.length, problems };
+    } catch (error) {
+      await failRun(db, runId, reasonOf(error));
+      throw error;
+    }
+  });
+  return outcome ?? { state: 'busy' };
+}
+
+interface Run {
+  runId: string;
+  asOf: string;
+}
+
+interface ComputedClass {
+  classId: string;
+  marks: ClassMarks;
+  tests: RunTests;
+}
+
+async function assessAll(
+  db: Database,
+  snapshot: Database,
+  run: Run,
+  { timeZone, onProblem }: NightlyOptions,
+): Promise<{ computed: ComputedClass[]; problems: number }> {
+  const computed: ComputedClass[] = [];
+  let problems = 0;
+  for (const classId of await listClassIds(snapshot)) {
+    const records = await readClassRecords(snapshot, classId, timeZone);
+    try {
+      const evidence = layOutClass(records, run.asOf);
+      const findings = computeFindings(evidence);
+      const marks = marksOf(evidence);
+      await insertAssessment(db, run, classId, { findings, conclusion: conclude(findings, marks, allHold) });
+      computed.push({ classId, marks, tests: runTestsOf(findings) });
+    } catch (error) {
+      problems += 1;
+      const reason = reasonOf(error);
+      await recordProblem(db, run.runId, classId, reason);
+      onProblem?.(classId, reason);
+    }
+  }
+  return { computed, problems };
+}
+
+/** Judges anew the classes whose tests do not hold up among all of the run, then puts the run in force. */
+async function settleRun(db: Database, run: Run, computed: readonly ComputedClass[]): Promise<void> {
+  const decisions = decideRun(computed.map(({ tests }) => tests));
+  for (const [index, { classId, marks }] of computed.entries()) {
+    const decision = decisions[index];
+    if (decision === undefined || (decision.wearOutPasses && decision.laplacePasses)) continue;
+    await rejudgeAssessment(db, run.runId, classId, (findings) => conclude(findings, marks, decision));
+  }
+  await finishRun(db, run.runId, run.asOf);
+}
+
+function marksOf({ itemSingular, itemPlural, statutory, endangersPeople }: ClassMarks): ClassMarks {
+  return { itemSingular, itemPlural, statutory, endangersPeople };
+}
+
+function reasonOf(error: unknown): string {
+  return error instanceof Error ? error.message : String(error);
+}

@@ -1,0 +1,49 @@
+import { DateTime } from 'luxon';
+import cron from 'node-cron';
+import { lastFinishedDay } from '~/models/job-runs.server';
+import { readOrganisation } from '~/models/organisation.server';
+import { openDatabase } from '../db/connection';
+import { nightlyJob, runNightly } from './nightly';
+import { lastCompleteDay, nightIsDue } from './nights-due';
+
+/** After midnight, when the day before is over, and away from the hour that clock changes repeat or skip. */
+const everyNight = '30 3 * * *';
+
+const db = openDatabase();
+const { timeZone } = await readOrganisation(db);
+
+async function nightly(): Promise<void> {
+  const asOf = lastCompleteDay(DateTime.now().setZone(timeZone));
+  try {
+    const outcome = await runNightly(db, {
+      asOf,
+      timeZone,
+      onProblem: (classId, reason) => console.error(`Class ${classId} could not be computed: ${reason}`),
+    });
+    if (outcome.state === 'busy') console.log('The nightly job is already running elsewhere.');
+    else
+      console.log(
+        `Assessed ${outcome.classes} classes as of ${asOf}; ${outcome.problems} could not be computed.`,
+      );
+  } catch (error) {
+    console.error('The nightly job failed; the previous night stays in force.', error);
+  }
+}
+
+const task = cron.schedule(everyNight, nightly, { timezone: timeZone, noOverlap: true });
+console.log(`Nightly assessment at 03:30, ${timeZone}.`);
+
+let working: Promise<void> = Promise.resolve();
+if (nightIsDue(await lastFinishedDay(db, nightlyJob), DateTime.now().setZone(timeZone))) {
+  console.log('A night is missing; catching up now.');
+  working = nightly();
+}
+
+async function stop(): Promise<void> {
+  await task.stop();
+  await Promise.race([working, new Promise((resolve) => setTimeout(resolve, 3_000))]);
+  await db.destroy();
+  process.exit(0);
+}
+process.on('SIGTERM', stop);
+process.on('SIGINT', stop);
