@@ -41,8 +41,8 @@ if (nightIsDue(await lastFinishedDay(db, nightlyJob), DateTime.now().setZone(tim
 
 async function stop(): Promise<void> {
   await task.stop();
-  await Promise.race([working, new Promise((resolve) => setTimeout(resolve, 3_000))]);
-  await db.destroy();
+  // A night cut off here is as if it had never begun; the next one completes it.
+  await Promise.race([working, new Promise((resolve) => setTimeout(resolve, 1_000))]);
   process.exit(0);
 }
 process.on('SIGTERM', stop);
