@@ -7,7 +7,8 @@ import {
   insertAssessment,
   rejudgeAssessment,
 } from '~/models/assessments.server';
-import { layOutClass, listClassIds, readClassRecords } from '~/models/class-evidence.server';
+import { listClassIds, readClassRecords } from '~/models/class-records.server';
+import { layOutClass } from '~/models/lay-out-class';
 import { failRun, recordProblem, startRun } from '~/models/job-runs.server';
 import { withJobLock } from '~/models/job-lock.server';
 import type { Database } from '../db/connection';
@@ -75,7 +76,7 @@ async function assessAll(
   const computed: ComputedClass[] = [];
   let problems = 0;
   for (const classId of await listClassIds(snapshot)) {
-    const records = await readClassRecords(snapshot, classId, timeZone);
+    const records = await readClassRecords(snapshot, classId, { timeZone, asOf: run.asOf });
     try {
       const evidence = layOutClass(records, run.asOf);
       const findings = computeFindings(evidence);

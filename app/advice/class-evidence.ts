@@ -8,7 +8,6 @@ export const leftOutReasons = [
   'outside-cause',
   'before-watch',
   'after-watch',
-  'group-asset',
   'inspection',
   'no-duty',
 ] as const;
@@ -26,11 +25,34 @@ export interface ClassEvidence {
   readonly clock: ClockKind;
   readonly statutory: boolean;
   readonly endangersPeople: boolean;
+  /** Nobody notices a failure until it is looked for. */
+  readonly hiddenFailures: boolean;
+  /** Money in minor units; null where nobody has said. */
+  readonly costs: {
+    readonly plannedMinor: number | null;
+    readonly failureMinor: number | null;
+    readonly groupPlannedMinor: number | null;
+  };
+  readonly sparesLeadTimeDays: number | null;
+  /** Mean availability a hidden function is to have. */
+  readonly requiredAvailability: number | null;
+  /** The renewing schedule in force, its interval in clock units; null where items run to failure. */
+  readonly currentTask: { readonly name: string; readonly interval: number } | null;
+  /** Clock units one position runs in a year. */
+  readonly clockUnitsAYear: number;
   /** End of the watch: the start of the day after the last complete one. */
   readonly now: number;
   readonly positions: readonly Position[];
+  /** Items of quantity assets whose ages cannot be told apart: they count for the first question only. */
+  readonly rateOnlyPositions: readonly Position[];
   /** Positions whose operating hours come from an assumed duty, not from a meter. */
   readonly positionsWithAssumedClock: number;
+  /** Tag and site of each position. */
+  readonly places: ReadonlyMap<string, { readonly label: string; readonly siteId: string }>;
+  /** When planned visits came to a position, inspections included. */
+  readonly visits: ReadonlyMap<string, readonly number[]>;
+  /** Quantity assets: items held so, their failures, and those without a fitted-on date. */
+  readonly groups: { readonly items: number; readonly failures: number; readonly undatedFailures: number };
   readonly modes: readonly { readonly id: string; readonly name: string }[];
   readonly leftOut: readonly { readonly reason: LeftOutReason; readonly count: number }[];
 }

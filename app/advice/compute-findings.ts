@@ -27,21 +27,27 @@ const daysAYear = 365;
  */
 export function computeFindings(evidence: ClassEvidence): Findings {
   const { positions, clock, now } = evidence;
-  const asset = assetHistories(positions);
+  // The first question takes in items whose ages cannot be told apart; the second cannot.
+  const everyPosition = [...positions, ...evidence.rateOnlyPositions];
+  const asset = assetHistories(everyPosition);
   const life = lifeHistories(positions);
-  const pooled = pooledExposure(positions);
-  const exposureClock = pooledExposureClock(positions);
+  const pooled = pooledExposure(everyPosition);
+  const exposureClock = pooledExposureClock(everyPosition);
   const renewalAge = upperQuartile(life.plannedRenewalAges);
   const yearAgo = now - daysAYear;
 
   return {
     clock,
     extent: {
-      positions: positions.length,
+      positions: everyPosition.length,
+      rateOnlyPositions: evidence.rateOnlyPositions.length,
+      groupItems: evidence.groups.items,
+      groupFailures: evidence.groups.failures,
+      undatedGroupFailures: evidence.groups.undatedFailures,
       positionsWithAssumedClock: evidence.positionsWithAssumedClock,
-      watchedFrom: earliestWatch(positions),
+      watchedFrom: earliestWatch(everyPosition),
       now,
-      plannedRenewals: countPlannedRenewals(positions),
+      plannedRenewals: countPlannedRenewals(everyPosition),
       lives: life.lives,
       livesEndedByFailure: life.livesEndedByFailure,
       livesEndedByPlannedRenewal: life.livesEndedByPlannedRenewal,

@@ -50,6 +50,11 @@ export const findingsSchema = z.object({
   clock: z.enum(['calendar-days', 'operating-hours']),
   extent: z.object({
     positions: z.number().int(),
+    /** Of these, items of quantity assets whose ages cannot be told apart. */
+    rateOnlyPositions: z.number().int(),
+    groupItems: z.number().int(),
+    groupFailures: z.number().int(),
+    undatedGroupFailures: z.number().int(),
     positionsWithAssumedClock: z.number().int(),
     /** First day under watch of any position; null when none is. */
     watchedFrom: z.number().nullable(),

@@ -1,4 +1,4 @@
-import { formatNoun } from '~/components/format';
+import { formatNoun } from '~/format/number';
 import type { LeftOutReason } from './class-evidence';
 
 /** How many records took no part for a reason, in words. */
@@ -13,8 +13,6 @@ export function leftOutSentence(reason: LeftOutReason, count: number): string {
       return `${records} from before the watch began: a renewal among them dates the item, the rest says nothing.`;
     case 'after-watch':
       return `${records} from after the watch ended or the day was over.`;
-    case 'group-asset':
-      return `${records} of assets that stand for several items.`;
     case 'inspection':
       return `${formatNoun(count, 'inspection, service or test', 'inspections, services and tests')}: they renew nothing and touch no clock.`;
     case 'no-duty':

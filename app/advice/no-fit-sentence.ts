@@ -1,4 +1,4 @@
-import { formatNoun } from '~/components/format';
+import { formatNoun } from '~/format/number';
 import type { NoFitReason } from '~/reliability/power-law';
 
 /**

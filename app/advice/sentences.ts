@@ -1,4 +1,4 @@
-import { formatClock, formatCount, formatFixed, formatNoun, formatPercent } from '~/components/format';
+import { formatClock, formatCount, formatFixed, formatNoun, formatPercent } from '~/format/number';
 import { maskedBeyond } from './cautions/masked-by-schedule';
 import type { ClassFacts, ClassMarks } from './class-facts';
 import { clockUnit } from './clock-unit';

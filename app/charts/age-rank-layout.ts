@@ -1,7 +1,8 @@
 import { scaleLinear } from '@visx/scale';
 
-import { formatCount, formatPercent } from '~/components/format';
-import { VERDICT_COLOUR, type VerdictCode } from '~/components/verdict';
+import { formatCount, formatPercent } from '~/format/number';
+import type { Verdict } from '~/advice/verdict';
+import { VERDICT_COLOUR } from '~/components/verdict';
 import { placeLabels, type LabelRequest } from './label-placement';
 import { FONT_SIZE, plotFrame, tenth, textWidth, type ChartSize, type Point, type Rect } from './plot-frame';
 
@@ -19,7 +20,7 @@ export interface AgeRankData {
   readonly meanShare: number;
   /** Interval of the average share, if there is one. */
   readonly meanInterval?: readonly [low: number, high: number];
-  readonly verdict: VerdictCode;
+  readonly verdict: Verdict;
 }
 
 /** One drawn mark; the last of a stack may stand for less than a whole one where a mark is several failures. */

@@ -1,4 +1,4 @@
-import { formatCount, formatNoun, formatPercent } from '~/components/format';
+import { formatCount, formatNoun, formatPercent } from '~/format/number';
 import {
   layoutAgeRank,
   usableMarks,

@@ -1,5 +1,5 @@
-import { formatInterval, formatQuantity, formatTrimmed } from '~/components/format';
-import { formatMoney, formatMoneyShort } from '~/components/format-money';
+import { formatInterval, formatQuantity, formatTrimmed } from '~/format/number';
+import { formatMoney, formatMoneyShort } from '~/format/money';
 import { XAxis, YAxis } from './axes';
 import { ChartAbsent, ChartFigure, type ChartTable } from './chart-figure';
 import { ChartLabels } from './chart-labels';

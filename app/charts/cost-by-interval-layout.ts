@@ -1,7 +1,7 @@
 import { scaleLinear } from '@visx/scale';
 
-import { formatQuantity, formatTrimmed } from '~/components/format';
-import { formatMoneyShort } from '~/components/format-money';
+import { formatQuantity, formatTrimmed } from '~/format/number';
+import { formatMoneyShort } from '~/format/money';
 import { cutAtTop } from './cut-at-top';
 import { fittingTicks } from './fitting-ticks';
 import { placeLabels, sampled, spotsAlong, type LabelRequest, type LabelSpot } from './label-placement';

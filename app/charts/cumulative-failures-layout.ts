@@ -1,6 +1,6 @@
 import { scaleLinear } from '@visx/scale';
 
-import { formatCount, formatTrimmed } from '~/components/format';
+import { formatCount, formatTrimmed } from '~/format/number';
 import { fittingTicks } from './fitting-ticks';
 import { placeLabels, sampled, spotsAlong, type PlacedLabel } from './label-placement';
 import {

@@ -1,4 +1,4 @@
-import { formatCount, formatInterval, formatNoun, formatNumber, formatTrimmed } from '~/components/format';
+import { formatCount, formatInterval, formatNoun, formatNumber, formatTrimmed } from '~/format/number';
 import { XAxis, YAxis } from './axes';
 import { ChartAbsent, ChartFigure, type ChartTable } from './chart-figure';
 import { ChartLabels } from './chart-labels';

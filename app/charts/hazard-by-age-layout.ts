@@ -1,6 +1,6 @@
 import { scaleLinear } from '@visx/scale';
 
-import { formatTrimmed } from '~/components/format';
+import { formatTrimmed } from '~/format/number';
 import { cutAtTop } from './cut-at-top';
 import { fittingTicks } from './fitting-ticks';
 import { placeLabels, sampled, spotsAlong, type LabelRequest } from './label-placement';

@@ -1,18 +1,18 @@
-import { formatCalendarDate } from '~/components/format-date';
-import type { VerdictCode } from '~/components/verdict';
+import { formatCalendarDate } from '~/format/date';
+import type { Verdict } from '~/advice/verdict';
 import { plotFrame, tenth, textWidth, type ChartSize } from './plot-frame';
 
 export interface VerdictNight {
   /** ISO calendar date. */
   readonly date: string;
-  readonly verdict: VerdictCode;
+  readonly verdict: Verdict;
   /** Failures behind it. */
   readonly n: number;
 }
 
 /** Nights on end with one verdict. */
 export interface VerdictRun {
-  readonly verdict: VerdictCode;
+  readonly verdict: Verdict;
   readonly from: string;
   readonly to: string;
   readonly nights: number;

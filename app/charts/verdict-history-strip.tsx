@@ -1,6 +1,7 @@
-import { formatCalendarDate } from '~/components/format-date';
-import { formatCount, formatNoun } from '~/components/format';
-import { VERDICT_COLOUR, type VerdictCode } from '~/components/verdict';
+import { formatCalendarDate } from '~/format/date';
+import { formatCount, formatNoun } from '~/format/number';
+import type { Verdict } from '~/advice/verdict';
+import { VERDICT_COLOUR } from '~/components/verdict';
 import { ChartAbsent, ChartFigure } from './chart-figure';
 import { FONT_SIZE } from './plot-frame';
 import {
@@ -49,7 +50,7 @@ export function VerdictHistoryStrip({
 }
 
 /** The hazard curve of each verdict, 16 units high, from 0 to 32. */
-const CURVE: Record<VerdictCode, string> = {
+const CURVE: Record<Verdict, string> = {
   'wear-out': 'M2 13C11 13 21 11 30 3',
   memoryless: 'M2 8H30',
   'early-life': 'M2 3C9 11 18 13 30 13',

@@ -1,4 +1,4 @@
-import { formatAlike, formatCount, formatInterval } from './format';
+import { formatAlike, formatCount, formatInterval } from '~/format/number';
 
 interface EstimateProps {
   value: number | null;

@@ -1,6 +1,6 @@
 import { Link } from 'react-router';
 
-import { formatCount } from './format';
+import { formatCount } from '~/format/number';
 
 interface PaginationProps {
   /** From 1. */

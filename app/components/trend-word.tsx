@@ -1,6 +1,6 @@
-import type { TrendCode } from './verdict';
+import type { Trend } from '~/advice/trend';
 
-const MARK: Record<TrendCode, string> = {
+const MARK: Record<Trend, string> = {
   rising: 'M2 13 13 3M7 3H13V9',
   falling: 'M2 3 13 13M13 7V13H7',
   level: 'M1 8H14M10 4 14 8 10 12',
@@ -8,7 +8,7 @@ const MARK: Record<TrendCode, string> = {
 };
 
 /** Rising, falling, level or unclear: an arrow of its own beside the word, so that it is no verdict glyph. */
-export function TrendWord({ trend }: { trend: TrendCode }) {
+export function TrendWord({ trend }: { trend: Trend }) {
   return (
     <span className={`inline-flex items-center gap-[0.4em] ${trend === 'unclear' ? 'text-grey' : ''}`}>
       <svg

@@ -1,6 +1,8 @@
-import { VERDICT_COLOUR, type VerdictCode } from './verdict';
+import type { Verdict } from '~/advice/verdict';
 
-const CURVE: Record<VerdictCode, string> = {
+import { VERDICT_COLOUR } from './verdict';
+
+const CURVE: Record<Verdict, string> = {
   'wear-out': 'M2 17C14 17 26 15 38 3',
   memoryless: 'M2 10H38',
   'early-life': 'M2 3C10 14 22 17 38 17',
@@ -8,7 +10,7 @@ const CURVE: Record<VerdictCode, string> = {
 };
 
 /** A verdict's own hazard curve against age: rising, level, falling, or a dashed line of nothing known. */
-export function VerdictGlyph({ verdict, className = 'w-8' }: { verdict: VerdictCode; className?: string }) {
+export function VerdictGlyph({ verdict, className = 'w-8' }: { verdict: Verdict; className?: string }) {
   return (
     <svg viewBox="0 0 40 20" aria-hidden="true" focusable="false" className={`inline-block ${className}`}>
       <path

@@ -1,10 +1,12 @@
 import type { ReactNode } from 'react';
 
-import { VERDICT_COLOUR, type VerdictCode } from './verdict';
+import type { Verdict } from '~/advice/verdict';
+
+import { VERDICT_COLOUR } from './verdict';
 import { VerdictGlyph } from './verdict-glyph';
 
 interface VerdictWordProps {
-  verdict: VerdictCode;
+  verdict: Verdict;
   /** Words in place of the bare verdict: "memoryless up to 180 days". */
   children?: ReactNode;
 }

@@ -3,7 +3,7 @@ import { z } from 'zod';
 import { Breadcrumbs } from '~/components/breadcrumbs';
 import { DataTable, type Column } from '~/components/data-table';
 import { EmptyState } from '~/components/empty-state';
-import { formatCalendarDate, formatDateTime } from '~/components/format-date';
+import { formatCalendarDate, formatDateTime } from '~/format/date';
 import { Pagination } from '~/components/pagination';
 import { readClassHead } from '~/models/class-list.server';
 import { listClassRecords, type ClassRecordRow } from '~/models/class-record-list.server';

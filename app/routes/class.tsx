@@ -10,8 +10,8 @@ import { exposureUnitName, QuestionTrend } from '~/components/class-page/questio
 import { RestsOn } from '~/components/class-page/rests-on';
 import { EmptyState } from '~/components/empty-state';
 import { FactStrip } from '~/components/fact-strip';
-import { formatCount, formatNoun, formatTrimmed } from '~/components/format';
-import { formatCalendarDate } from '~/components/format-date';
+import { formatCount, formatNoun, formatTrimmed } from '~/format/number';
+import { formatCalendarDate } from '~/format/date';
 import { Notice } from '~/components/notice';
 import { QuestionSection } from '~/components/question-section';
 import { VERDICT_COLOUR } from '~/components/verdict';

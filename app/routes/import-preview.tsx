@@ -1,7 +1,7 @@
 import { data, href } from 'react-router';
 import { z } from 'zod';
 import { Breadcrumbs } from '~/components/breadcrumbs';
-import { formatDateTime } from '~/components/format-date';
+import { formatDateTime } from '~/format/date';
 import { Decision } from '~/components/imports/decision';
 import { formatBytes, kindWords, statusWords } from '~/components/imports/import-words';
 import { Outcome } from '~/components/imports/outcome';

@@ -1,7 +1,7 @@
 import { href, Link } from 'react-router';
 import { EmptyState } from '~/components/empty-state';
-import { formatCalendarDate, formatDateTime } from '~/components/format-date';
-import { formatCount, formatNoun, formatTrimmed } from '~/components/format';
+import { formatCalendarDate, formatDateTime } from '~/format/date';
+import { formatCount, formatNoun, formatTrimmed } from '~/format/number';
 import { DataTable, type Column } from '~/components/data-table';
 import { listProblems, listRuns, type JobRun, type JobRunProblem } from '~/models/job-runs.server';
 import { organisation, requireRole } from '~/services/viewer.server';

@@ -1,4 +1,4 @@
-import { formatCount, formatNoun } from '~/components/format';
+import { formatCount, formatNoun } from '~/format/number';
 import type { ClassFacts } from '../class-facts';
 import type { Caution } from '../conclusion';
 

@@ -1,4 +1,4 @@
-import { formatNoun } from '~/components/format';
+import { formatNoun } from '~/format/number';
 import type { ClassFacts } from '../class-facts';
 import type { Caution } from '../conclusion';
 

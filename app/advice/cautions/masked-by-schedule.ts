@@ -1,4 +1,4 @@
-import { formatClock, formatPercent } from '~/components/format';
+import { formatClock, formatPercent } from '~/format/number';
 import { clockUnit } from '../clock-unit';
 import type { ClassFacts } from '../class-facts';
 import type { Caution } from '../conclusion';

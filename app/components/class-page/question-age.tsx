@@ -5,7 +5,7 @@ import type { Findings } from '~/advice/findings';
 import { AgeRankStrip } from '~/charts/age-rank-strip';
 import { HazardByAgeChart } from '~/charts/hazard-by-age-chart';
 import { FigureList } from '../figure-list';
-import { formatClock, formatFixed, formatP } from '../format';
+import { formatClock, formatFixed, formatP } from '~/format/number';
 import { QuestionSection } from '../question-section';
 import { VERDICT_COLOUR } from '../verdict';
 import { ShapeEstimate } from './shape-estimate';

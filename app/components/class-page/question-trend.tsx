@@ -5,7 +5,7 @@ import type { Findings } from '~/advice/findings';
 import { CumulativeFailuresChart } from '~/charts/cumulative-failures-chart';
 import { Estimate } from '../estimate';
 import { FigureList } from '../figure-list';
-import { formatClock, formatCount, formatFixed, formatP, formatTrimmed } from '../format';
+import { formatClock, formatCount, formatFixed, formatP, formatTrimmed } from '~/format/number';
 import { QuestionSection } from '../question-section';
 import { ShapeEstimate } from './shape-estimate';
 

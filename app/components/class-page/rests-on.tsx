@@ -1,7 +1,7 @@
 import type { Findings } from '~/advice/findings';
 import { leftOutSentence } from '~/advice/left-out-sentence';
 import { FigureList } from '../figure-list';
-import { formatCount, formatNoun } from '../format';
+import { formatCount, formatNoun } from '~/format/number';
 import { QuestionSection } from '../question-section';
 import type { ReactNode } from 'react';
 

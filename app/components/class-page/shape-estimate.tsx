@@ -1,6 +1,6 @@
 import type { ShapeFit } from '~/advice/findings';
 import { Estimate } from '../estimate';
-import { formatFixed } from '../format';
+import { formatFixed } from '~/format/number';
 
 /** A fitted shape or slope with its interval and n, or why there is none. */
 export function ShapeEstimate({ fit }: { fit: ShapeFit }) {

@@ -1,6 +1,6 @@
 import type { ClassSettings, ConfirmedChange } from '~/models/asset-classes.server';
 
-import { formatMoney } from '../format-money';
+import { formatMoney } from '~/format/money';
 
 export const clockWords: Record<ClassSettings['clock'], string> = {
   'calendar-days': 'Days on the calendar',

@@ -1,7 +1,7 @@
 import { Form, href, useNavigation } from 'react-router';
 import type { ImportSummary } from '~/models/imports.server';
 import { Button, LinkButton } from '../button';
-import { formatNoun } from '../format';
+import { formatNoun } from '~/format/number';
 import { Notice } from '../notice';
 
 /** What can be done with an import that waits: write all of it, write the good rows, correct, or discard. */

@@ -1,6 +1,6 @@
 import type { ImportKind, RowStatus } from '~/models/import-types';
 import type { ImportState } from '~/models/imports.server';
-import { formatFixed, formatNoun, formatTrimmed } from '../format';
+import { formatFixed, formatNoun, formatTrimmed } from '~/format/number';
 
 export const kindWords: Record<ImportKind, string> = { register: 'Register', history: 'History' };
 

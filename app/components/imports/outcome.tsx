@@ -1,8 +1,8 @@
 import { href } from 'react-router';
 import type { ImportSummary } from '~/models/imports.server';
 import { LinkButton } from '../button';
-import { formatNoun } from '../format';
-import { formatDateTime } from '../format-date';
+import { formatNoun } from '~/format/number';
+import { formatDateTime } from '~/format/date';
 import { Notice } from '../notice';
 
 /** What became of an import, and what to know about its file. */

@@ -1,7 +1,7 @@
 import type { RowStatus } from '~/models/import-types';
 import type { ImportRow } from '~/models/imports.server';
 import { DataTable, type Column } from '../data-table';
-import { formatCount } from '../format';
+import { formatCount } from '~/format/number';
 import { statusWords } from './import-words';
 
 const remarkHeaders: Record<RowStatus, string | null> = {

@@ -1,6 +1,6 @@
 import { Link } from 'react-router';
 import { rowStatuses, type RowStatus } from '~/models/import-types';
-import { formatCount } from '../format';
+import { formatCount } from '~/format/number';
 import { statusWords } from './import-words';
 
 interface StatusLinksProps {

@@ -1,6 +1,6 @@
 import { useEffect } from 'react';
 import { useRevalidator } from 'react-router';
-import { formatNoun } from '../format';
+import { formatNoun } from '~/format/number';
 import { Notice } from '../notice';
 
 const lookAgainMilliseconds = 1500;

@@ -1,6 +1,6 @@
 import { href, Link } from 'react-router';
 
-import { formatCalendarDate } from '../format-date';
+import { formatCalendarDate } from '~/format/date';
 import { placeWords } from './words';
 
 interface ListedAsset {

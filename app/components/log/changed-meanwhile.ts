@@ -1,4 +1,4 @@
-import { formatDateTime } from '../format-date';
+import { formatDateTime } from '~/format/date';
 
 const deeds: Record<string, string> = {
   log: 'logged it',

@@ -2,7 +2,7 @@ import { DateTime } from 'luxon';
 import { z } from 'zod';
 import { effects, type FailureEntry, outsideCauses } from '~/models/failure';
 
-import { formatCalendarDate } from '../format-date';
+import { formatCalendarDate } from '~/format/date';
 
 /** The value of the mode field that stands for none of the class's modes. */
 export const otherMode = 'other';

@@ -1,4 +1,4 @@
-import { formatCalendarDate } from '../format-date';
+import { formatCalendarDate } from '~/format/date';
 
 export interface FittedQuestion {
   /** The day a yes confirms, 'YYYY-MM-DD'. */

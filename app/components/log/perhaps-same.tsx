@@ -1,4 +1,4 @@
-import { formatCalendarDate, formatDateTime } from '../format-date';
+import { formatCalendarDate, formatDateTime } from '~/format/date';
 import { Notice } from '../notice';
 import { effectWords } from './words';
 

@@ -1,5 +1,5 @@
 import type { FailureRefusal } from '~/models/failure-refusals';
-import { formatCalendarDate } from '../format-date';
+import { formatCalendarDate } from '~/format/date';
 
 /** Field of the log form that a refusal belongs to; null for the whole form. */
 export type RefusedField = 'mode' | 'when' | 'failedOn' | 'fitted' | 'fittedOn' | null;

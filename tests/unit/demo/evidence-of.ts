@@ -1,74 +1,97 @@
 import type { ClassSpec } from '../../../fixtures/demo/class-spec';
-import type { DemoAsset, DemoFailure, DemoPlannedWork, DemoRecords } from '../../../fixtures/demo/records';
+import type { DemoFailure, DemoPlannedWork, DemoRecords } from '../../../fixtures/demo/records';
 import type { ClassEvidence } from '~/advice/class-evidence';
-import type { Position, PositionEvent } from '~/reliability/position';
-import { calendarUsage, dutyUsage } from '~/reliability/usage';
+import type { ClassRecords, RecordRow } from '~/models/class-records.server';
+import { dayNumber, dayOf } from '~/models/day-number';
+import { layOutClass } from '~/models/lay-out-class';
 
-/** The evidence of one demo class as of yesterday, on day offsets, laid out as the records tell it. */
+/** The day the demo is filled in, for these tests; verdicts do not depend on it. */
+const today = '2026-06-30';
+
+const day = (offset: number) => dayOf(dayNumber(today) + offset);
+const dayOrNull = (offset: number | null) => (offset === null ? null : day(offset));
+
+/** The evidence of one demo class as of yesterday, laid out as the product lays it out from the database. */
 export function evidenceOf(spec: ClassSpec, records: DemoRecords): ClassEvidence {
-  const assets = records.assets.filter(
-    ({ className, quantity }) => className === spec.name && quantity === 1,
-  );
-  const failuresOf = groupByAsset(records.failures);
-  const workOf = groupByAsset(records.plannedWork);
-  const positions = assets.map((asset) =>
-    positionOf(spec, asset, failuresOf.get(asset.id) ?? [], workOf.get(asset.id) ?? []),
-  );
+  return layOutClass(classRecordsOf(spec, records), day(-1));
+}
+
+function classRecordsOf(spec: ClassSpec, { assets, failures, plannedWork }: DemoRecords): ClassRecords {
+  const own = assets.filter(({ className }) => className === spec.name);
+  const ids = new Set(own.map(({ id }) => id));
+  const isOwn = ({ assetId }: { assetId: string }) => ids.has(assetId);
+  const task = spec.tasks.find(({ kind }) => kind === 'replace' || kind === 'restore');
   return {
-    itemSingular: spec.itemSingular,
-    itemPlural: spec.itemPlural,
-    clock: spec.clock,
-    statutory: spec.statutory,
-    endangersPeople: spec.endangersPeople,
-    now: 0,
-    positions,
-    positionsWithAssumedClock: spec.clock === 'operating-hours' ? positions.length : 0,
-    modes: [],
-    leftOut: [],
+    assetClass: {
+      ...spec,
+      id: spec.name,
+      plannedCostMinor: spec.plannedCostMinor,
+      failureCostMinor: spec.failureCostMinor,
+      groupPlannedCostMinor: null,
+      sparesLeadTimeDays: null,
+      requiredAvailability: null,
+    },
+    assets: own.map((asset) => ({
+      id: asset.id,
+      tag: asset.tag,
+      siteId: asset.site,
+      quantity: asset.quantity,
+      inServiceOn: day(asset.inServiceDay),
+      watchedFrom: day(asset.watchedFromDay),
+      watchedUntil: null,
+      retiredOn: dayOrNull(asset.retiredDay),
+      itemFittedOn: dayOrNull(asset.itemFittedDay),
+      dutyHoursPerDay: asset.dutyHoursPerDay,
+    })),
+    records: [...failures.filter(isOwn).map(failureRow), ...plannedWork.filter(isOwn).map(workRow)].sort(
+      (a, b) => (a.day < b.day ? -1 : a.day > b.day ? 1 : 0),
+    ),
+    readings: [],
+    fitted: [],
+    modes: [...new Set(failures.filter(isOwn).map(({ mode }) => mode))].map((name) => ({ id: name, name })),
+    renewalTask: task
+      ? {
+          name: task.name,
+          intervalDays: task.intervalDays ?? null,
+          intervalHours: task.intervalHours ?? null,
+        }
+      : null,
   };
 }
 
-function groupByAsset<T extends { assetId: string }>(records: readonly T[]): Map<string, T[]> {
-  const groups = new Map<string, T[]>();
-  for (const record of records) groups.set(record.assetId, [...(groups.get(record.assetId) ?? []), record]);
-  return groups;
-}
+type SharedColumns = Pick<
+  RecordRow,
+  'assetId' | 'day' | 'timeOfDay' | 'itemFittedOn' | 'itemAge' | 'items' | 'voided'
+>;
 
-function positionOf(
-  spec: ClassSpec,
-  asset: DemoAsset,
-  failures: readonly DemoFailure[],
-  work: readonly DemoPlannedWork[],
-): Position {
-  const events = [
-    ...failures.filter(({ voided }) => voided === null).flatMap(failureEvent),
-    ...work.filter(({ renewed, voided }) => renewed && voided === null).map((record) => renewalEvent(record)),
-  ];
+function sharedColumns(record: DemoFailure | DemoPlannedWork): SharedColumns {
   return {
-    id: asset.id,
-    inServiceAt: asset.inServiceDay,
-    watchFrom: asset.watchedFromDay,
-    watchTo: asset.retiredDay ?? 0,
-    fittedAt: asset.itemFittedDay,
-    usage: spec.clock === 'operating-hours' ? dutyUsage(asset.dutyHoursPerDay ?? NaN) : calendarUsage,
-    halfResolutionDays: 0.5,
-    events: events.sort((a, b) => a.at - b.at),
+    assetId: record.assetId,
+    day: day(record.day),
+    timeOfDay: record.minute === null ? null : record.minute / 1440,
+    itemFittedOn: dayOrNull(record.itemFittedDay),
+    itemAge: null,
+    items: null,
+    voided: record.voided !== null,
   };
 }
 
-function failureEvent(failure: DemoFailure): PositionEvent[] {
-  const { outsideCause, effect, mode, itemFittedDay } = failure;
-  const base = { at: momentOf(failure), itemFittedAt: itemFittedDay };
-  if (outsideCause === null) {
-    return [{ ...base, kind: effect === 'renewed' ? 'failure-renewed' : 'failure-patched', mode }];
-  }
-  return effect === 'renewed' ? [{ ...base, kind: 'other-renewal', mode: null }] : [];
+function failureRow(failure: DemoFailure): RecordRow {
+  return {
+    ...sharedColumns(failure),
+    source: 'failure',
+    renewed: failure.effect === 'renewed',
+    modeId: failure.mode,
+    outsideCause: failure.outsideCause,
+  };
 }
 
-function renewalEvent(work: DemoPlannedWork): PositionEvent {
-  return { at: momentOf(work), kind: 'planned-renewal', mode: null, itemFittedAt: work.itemFittedDay };
-}
-
-function momentOf({ day, minute }: { day: number; minute: number | null }): number {
-  return day + (minute ?? 0) / 1440;
+function workRow(work: DemoPlannedWork): RecordRow {
+  return {
+    ...sharedColumns(work),
+    source: 'planned-work',
+    renewed: work.renewed,
+    modeId: null,
+    outsideCause: null,
+  };
 }

@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 
-import { formatMoney, formatMoneyShort } from '~/components/format-money';
+import { formatMoney, formatMoneyShort } from '~/format/money';
 
 const T = '\u202f';
 

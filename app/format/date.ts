@@ -1,4 +1,4 @@
-import { NOT_KNOWN } from './format';
+import { NOT_KNOWN } from './number';
 
 const formatters = new Map<string, Intl.DateTimeFormat>();
 

@@ -1,6 +1,6 @@
 import { expect, it } from 'vitest';
 
-import { formatCalendarDate, formatDate, formatDateTime } from '~/components/format-date';
+import { formatCalendarDate, formatDate, formatDateTime } from '~/format/date';
 
 const lateEvening = new Date('2026-03-14T23:30:00Z');
 

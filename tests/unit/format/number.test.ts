@@ -14,7 +14,7 @@ import {
   formatQuantity,
   formatSpanDays,
   formatTrimmed,
-} from '~/components/format';
+} from '~/format/number';
 
 const T = '\u202f';
 

@@ -1,4 +1,4 @@
-import { NOT_KNOWN } from './format';
+import { NOT_KNOWN } from './number';
 
 const THIN = '\u202f';
 const MINUS = '\u2212';
