@@ -10,6 +10,7 @@ export default [
     route('classes/:classId', 'routes/class.tsx'),
     route('classes/:classId/settings', 'routes/class-settings.tsx'),
     route('classes/:classId/records', 'routes/class-records.tsx'),
+    route('alarms/:alarmId/clear', 'routes/alarm-clear.tsx'),
     route('log', 'routes/log-find-asset.tsx'),
     route('log/:assetId', 'routes/log-failure.tsx'),
     route('failures/:failureId', 'routes/failure.tsx'),

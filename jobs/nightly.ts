@@ -1,5 +1,7 @@
 import { conclude, decideRun, runTestsOf, type RunDecisions, type RunTests } from '~/advice/conclude';
 import { computeFindings } from '~/advice/compute-findings';
+import { advanceAlarmState } from '~/advice/advance-alarm-state';
+import type { AlarmState } from '~/advice/alarm-findings';
 import type { ClassMarks } from '~/advice/class-facts';
 import {
   dropUnfinishedAssessments,
@@ -9,9 +11,12 @@ import {
 } from '~/models/assessments.server';
 import { listClassIds, readClassRecords } from '~/models/class-records.server';
 import { layOutClass } from '~/models/lay-out-class';
+import { loadAlarmStates } from '~/models/alarms.server';
+import type { Organisation } from '~/models/organisation.server';
 import { failRun, recordProblem, startRun } from '~/models/job-runs.server';
 import { withJobLock } from '~/models/job-lock.server';
 import type { Database } from '../db/connection';
+import { settleAlarms } from './nightly-alarms';
 
 export const nightlyJob = 'nightly';
 
@@ -23,13 +28,16 @@ export type NightlyOutcome =
 interface NightlyOptions {
   /** The last complete day whose records count, 'YYYY-MM-DD'. */
   asOf: string;
-  timeZone: string;
+  /** Zone, money and service level. */
+  organisation: Pick<Organisation, 'timeZone' | 'currency' | 'serviceLevel'>;
   /** Told about each class that could not be computed. */
   onProblem?: (classId: string, reason: string) => void;
 }
 
 /** Judged as if every test held up: most classes are not touched by what the others show. */
-const allHold: RunDecisions = { wearOutPasses: true, laplacePasses: true };
+function allHold({ pWearOutOfModes }: RunTests): RunDecisions {
+  return { wearOutPasses: true, laplacePasses: true, modesWearOutPass: pWearOutOfModes.map(() => true) };
+}
 
 /**
  * Assesses every class as of a day and puts the results in force together.
@@ -46,7 +54,10 @@ export async function runNightly(db: Database, options: NightlyOptions): Promise
     try {
       await dropUnfinishedAssessments(db);
       const { computed, problems } = await assessAll(db, snapshot, { runId, asOf }, options);
-      await settleRun(db, { runId, asOf }, computed);
+      if (computed.length === 0 && problems > 0) {
+        throw new Error(`None of the ${problems} classes could be computed.`);
+      }
+      await settleRun(db, { runId, asOf }, computed, options);
       return { state: 'finished' as const, runId, classes: computed.length, problems };
     } catch (error) {
       await failRun(db, runId, reasonOf(error));
@@ -65,24 +76,31 @@ interface ComputedClass {
   classId: string;
   marks: ClassMarks;
   tests: RunTests;
+  alarmState: AlarmState;
 }
 
 async function assessAll(
   db: Database,
   snapshot: Database,
   run: Run,
-  { timeZone, onProblem }: NightlyOptions,
+  { organisation, onProblem }: NightlyOptions,
 ): Promise<{ computed: ComputedClass[]; problems: number }> {
   const computed: ComputedClass[] = [];
   let problems = 0;
+  const { timeZone, currency, serviceLevel } = organisation;
+  const alarmStates = await loadAlarmStates(snapshot);
   for (const classId of await listClassIds(snapshot)) {
     const records = await readClassRecords(snapshot, classId, { timeZone, asOf: run.asOf });
     try {
-      const evidence = layOutClass(records, run.asOf);
-      const findings = computeFindings(evidence);
+      const evidence = layOutClass(records, { asOf: run.asOf, serviceLevel });
+      const positions = [...evidence.positions, ...evidence.rateOnlyPositions];
+      const alarmState = advanceAlarmState(alarmStates.get(classId) ?? null, positions);
+      const findings = computeFindings(evidence, alarmState);
       const marks = marksOf(evidence);
-      await insertAssessment(db, run, classId, { findings, conclusion: conclude(findings, marks, allHold) });
-      computed.push({ classId, marks, tests: runTestsOf(findings) });
+      const tests = runTestsOf(findings);
+      const conclusion = conclude(findings, { marks, currency }, allHold(tests));
+      await insertAssessment(db, run, classId, { findings, conclusion });
+      computed.push({ classId, marks, tests, alarmState });
     } catch (error) {
       problems += 1;
       const reason = reasonOf(error);
@@ -94,14 +112,28 @@ async function assessAll(
 }
 
 /** Judges anew the classes whose tests do not hold up among all of the run, then puts the run in force. */
-async function settleRun(db: Database, run: Run, computed: readonly ComputedClass[]): Promise<void> {
+async function settleRun(
+  db: Database,
+  run: Run,
+  computed: readonly ComputedClass[],
+  { organisation: { currency } }: NightlyOptions,
+): Promise<void> {
   const decisions = decideRun(computed.map(({ tests }) => tests));
   for (const [index, { classId, marks }] of computed.entries()) {
     const decision = decisions[index];
-    if (decision === undefined || (decision.wearOutPasses && decision.laplacePasses)) continue;
-    await rejudgeAssessment(db, run.runId, classId, (findings) => conclude(findings, marks, decision));
+    if (decision === undefined || everythingHolds(decision)) continue;
+    await rejudgeAssessment(db, run.runId, classId, (findings) =>
+      conclude(findings, { marks, currency }, decision),
+    );
   }
-  await finishRun(db, run.runId, run.asOf);
+  await db.transaction(async (transaction) => {
+    await finishRun(transaction, run.runId, run.asOf);
+    await settleAlarms(transaction, run, computed);
+  });
+}
+
+function everythingHolds({ wearOutPasses, laplacePasses, modesWearOutPass }: RunDecisions): boolean {
+  return wearOutPasses && laplacePasses && modesWearOutPass.every(Boolean);
 }
 
 function marksOf({ itemSingular, itemPlural, statutory, endangersPeople }: ClassMarks): ClassMarks {

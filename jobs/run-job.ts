@@ -1,7 +1,7 @@
 import { DateTime } from 'luxon';
 import { parseArgs } from 'node:util';
 import { z } from 'zod';
-import { readOrganisation } from '~/models/organisation.server';
+import { readOrganisation, type Organisation } from '~/models/organisation.server';
 import { openDatabase } from '../db/connection';
 import { nightlyJob, runNightly } from './nightly';
 import { lastCompleteDay } from './nights-due';
@@ -26,19 +26,23 @@ async function main(): Promise<number> {
   }
   const db = openDatabase();
   try {
-    const { timeZone } = await readOrganisation(db);
+    const organisation = await readOrganisation(db);
+    const { timeZone } = organisation;
     const lastDay = lastCompleteDay(DateTime.now().setZone(timeZone));
     if (asOf.data !== undefined && asOf.data > lastDay) {
       console.error(`${asOf.data} is not over yet: the last complete day is ${lastDay}.`);
       return 2;
     }
-    return await nightly(db, { asOf: asOf.data ?? lastDay, timeZone });
+    return await nightly(db, { asOf: asOf.data ?? lastDay, organisation });
   } finally {
     await db.destroy();
   }
 }
 
-async function nightly(db: ReturnType<typeof openDatabase>, night: { asOf: string; timeZone: string }) {
+async function nightly(
+  db: ReturnType<typeof openDatabase>,
+  night: { asOf: string; organisation: Organisation },
+) {
   const outcome = await runNightly(db, {
     ...night,
     onProblem: (classId, reason) => console.error(`Class ${classId} could not be computed: ${reason}`),
@@ -53,4 +57,9 @@ async function nightly(db: ReturnType<typeof openDatabase>, night: { asOf: strin
   return 0;
 }
 
-process.exitCode = await main();
+try {
+  process.exitCode = await main();
+} catch (error) {
+  console.error('The job failed; what was in force stays in force.', error);
+  process.exitCode = 1;
+}

@@ -17,7 +17,7 @@ async function nightly(): Promise<void> {
   try {
     const outcome = await runNightly(db, {
       asOf,
-      timeZone,
+      organisation: await readOrganisation(db),
       onProblem: (classId, reason) => console.error(`Class ${classId} could not be computed: ${reason}`),
     });
     if (outcome.state === 'busy') console.log('The nightly job is already running elsewhere.');

@@ -13,6 +13,13 @@ export const leftOutReasons = [
 ] as const;
 export type LeftOutReason = (typeof leftOutReasons)[number];
 
+/** Where a position is and what it is called there. */
+export interface Place {
+  readonly tag: string;
+  readonly siteId: string;
+  readonly siteName: string;
+}
+
 /**
  * All that is known about one asset class on the night: what an assessment is made from.
  *
@@ -34,6 +41,8 @@ export interface ClassEvidence {
     readonly groupPlannedMinor: number | null;
   };
   readonly sparesLeadTimeDays: number | null;
+  /** Share of lead times in which the spares held are to be enough, in (0, 1). */
+  readonly serviceLevel: number;
   /** Mean availability a hidden function is to have. */
   readonly requiredAvailability: number | null;
   /** The renewing schedule in force, its interval in clock units; null where items run to failure. */
@@ -47,12 +56,18 @@ export interface ClassEvidence {
   readonly rateOnlyPositions: readonly Position[];
   /** Positions whose operating hours come from an assumed duty, not from a meter. */
   readonly positionsWithAssumedClock: number;
-  /** Tag and site of each position. */
-  readonly places: ReadonlyMap<string, { readonly label: string; readonly siteId: string }>;
-  /** When planned visits came to a position, inspections included. */
+  readonly places: ReadonlyMap<string, Place>;
+  /** When planned visits that renewed nothing came to a position: inspections, services, tests. */
   readonly visits: ReadonlyMap<string, readonly number[]>;
-  /** Quantity assets: items held so, their failures, and those without a fitted-on date. */
-  readonly groups: { readonly items: number; readonly failures: number; readonly undatedFailures: number };
+  /** What stands for several items at once. */
+  readonly groups: {
+    readonly assets: number;
+    readonly items: number;
+    readonly itemsOfUnknownAge: number;
+    readonly failures: number;
+    /** Failures of which nobody can say how old the failed item was. */
+    readonly undatedFailures: number;
+  };
   readonly modes: readonly { readonly id: string; readonly name: string }[];
   readonly leftOut: readonly { readonly reason: LeftOutReason; readonly count: number }[];
 }

@@ -1,21 +1,29 @@
 import { ageRankTest } from '~/reliability/age-rank';
 import { assetHistories } from '~/reliability/asset-histories';
-import { fitExponential, meanTimeInterval } from '~/reliability/exponential';
+import { meanTimeInterval } from '~/reliability/exponential';
 import { failuresToSettle } from '~/reliability/failures-to-settle';
-import { totalExposure, type History } from '~/reliability/history';
+import type { History } from '~/reliability/history';
 import { laplaceTest } from '~/reliability/laplace';
 import { lifeHistories, type LifeHistories } from '~/reliability/life-histories';
-import { likelihoodRatio } from '~/reliability/likelihood-ratio';
 import { militaryHandbookTest } from '~/reliability/military-handbook';
 import { piecewiseHazard } from '~/reliability/piecewise-hazard';
-import { pooledExposure, pooledExposureClock } from '~/reliability/pooled-exposure';
+import { pooledExposure, pooledExposureClock, type PooledExposure } from '~/reliability/pooled-exposure';
 import type { Position } from '~/reliability/position';
 import { fitPowerLaw, type NoPowerLawFit, type PowerLawFit } from '~/reliability/power-law';
 import { silenceChance } from '~/reliability/silence';
-import { weibullB10, weibullMeanLife } from '~/reliability/weibull';
+import { alarmFindings } from './advance-alarm-state';
+import type { AlarmState } from './alarm-findings';
 import type { ClassEvidence } from './class-evidence';
-import type { FailureRate, Findings, ShapeFit } from './findings';
-import { noFitSentence } from './no-fit-sentence';
+import { findModes } from './find-modes';
+import { findScatter } from './find-scatter';
+import type { FailureRate, Findings } from './findings';
+import { forecast } from './forecast';
+import { itemsInPlace } from './items-in-place';
+import { estimateLife } from './life-estimates';
+import { summariseLives } from './life-summary';
+import { maskedAge, renewalHabits } from './masking';
+import { priceSchedule } from './price-schedule';
+import { toShapeFit } from './shape-fit';
 
 const daysAYear = 365;
 
@@ -23,70 +31,111 @@ const daysAYear = 365;
  * Estimates everything that an assessment of one class rests on. Pure: the same evidence gives the same
  * numbers to the last bit.
  *
+ * @param alarmState what all failures so far add up to, for the alarms.
  * @throws InvalidHistoryError or RangeError where records that passed every check still make no history.
  */
-export function computeFindings(evidence: ClassEvidence): Findings {
-  const { positions, clock, now } = evidence;
+export function computeFindings(evidence: ClassEvidence, alarmState: AlarmState): Findings {
+  const { positions, rateOnlyPositions, clock, now } = evidence;
   // The first question takes in items whose ages cannot be told apart; the second cannot.
-  const everyPosition = [...positions, ...evidence.rateOnlyPositions];
+  const everyPosition = [...positions, ...rateOnlyPositions];
   const asset = assetHistories(everyPosition);
   const life = lifeHistories(positions);
   const pooled = pooledExposure(everyPosition);
   const exposureClock = pooledExposureClock(everyPosition);
-  const renewalAge = upperQuartile(life.plannedRenewalAges);
+  const slope = fitPowerLaw(asset.histories);
+  const lifeFit = fitPowerLaw(life.histories);
   const yearAgo = now - daysAYear;
+  const rate = {
+    overall: failureRate(pooled.failures.length, pooled.totalExposure),
+    lastYear: failureRate(
+      pooled.failures.filter(({ at }) => at >= yearAgo).length,
+      pooled.totalExposure - Math.min(exposureClock(yearAgo), pooled.totalExposure),
+    ),
+  };
+  const extent = extentOf(evidence, everyPosition, life);
+  const renewals = renewalHabits(life);
 
   return {
     clock,
-    extent: {
-      positions: everyPosition.length,
-      rateOnlyPositions: evidence.rateOnlyPositions.length,
-      groupItems: evidence.groups.items,
-      groupFailures: evidence.groups.failures,
-      undatedGroupFailures: evidence.groups.undatedFailures,
-      positionsWithAssumedClock: evidence.positionsWithAssumedClock,
-      watchedFrom: earliestWatch(everyPosition),
-      now,
-      plannedRenewals: countPlannedRenewals(everyPosition),
-      lives: life.lives,
-      livesEndedByFailure: life.livesEndedByFailure,
-      livesEndedByPlannedRenewal: life.livesEndedByPlannedRenewal,
-      livesLeftOut: life.livesLeftOut,
-      livesDatedByRecord: life.datedByRecord,
-      conflictingDates: life.conflictingDates,
-      zeroLives: life.zeroLives,
-    },
+    extent,
     leftOut: evidence.leftOut.map(({ reason, count }) => ({ reason, count })),
-    rate: {
-      overall: failureRate(pooled.failures.length, pooled.totalExposure),
-      lastYear: failureRate(
-        pooled.failures.filter(({ at }) => at >= yearAgo).length,
-        pooled.totalExposure - Math.min(exposureClock(yearAgo), pooled.totalExposure),
-      ),
-    },
-    trend: {
-      ...trendTests(asset.histories),
-      slope: shapeFit(fitPowerLaw(asset.histories), 'on record'),
-      failureExposures: pooled.failures.map(({ exposure }) => exposure),
-      totalExposure: pooled.totalExposure,
-      silence: silence(
-        pooled.failures.map(({ exposure }) => exposure),
-        pooled.totalExposure,
-      ),
-    },
+    rate,
+    trend: trendFindings(asset.histories, slope, pooled),
     life: lifeFindings(life),
     ageRank: ageRank(positions),
-    schedule: {
-      usualRenewalAge: renewalAge,
-      exposureBeyondUsualAge: renewalAge === null ? 0 : exposureBeyond(life.histories, renewalAge),
-      lifeExposure: totalExposure(life.histories),
-    },
+    renewals,
+    modes: findModes(positions, evidence.modes),
+    scatter: scatterFindings(evidence, everyPosition, {
+      pooled,
+      asset: { histories: asset.histories, slope: shapeOf(slope) },
+      life: { histories: life.histories, shape: shapeOf(lifeFit) },
+    }),
+    schedule: priceSchedule({
+      clock,
+      fit: lifeFit,
+      lives: summariseLives(life.histories),
+      patchedShare: patchedShare(life),
+      costs: evidence.costs,
+      current: { interval: evidence.currentTask?.interval ?? null, task: evidence.currentTask?.name ?? null },
+      positions: itemsInPlace(everyPosition, now).positions.length,
+      unitsAYear: evidence.clockUnitsAYear,
+      isGroup: evidence.groups.assets > 0,
+      maskedAge: maskedAge({ extent, renewals }),
+      hidden:
+        evidence.hiddenFailures && evidence.requiredAvailability !== null && pooled.totalExposure > 0
+          ? {
+              requiredAvailability: evidence.requiredAvailability,
+              failures: pooled.failures.length,
+              exposure: pooled.totalExposure,
+            }
+          : null,
+    }),
+    forecast: forecast({
+      positions: everyPosition,
+      now,
+      overall: rate.overall,
+      lastYear: rate.lastYear,
+      fit: lifeFit,
+      currentInterval: evidence.currentTask?.interval ?? null,
+      leadTimeDays: evidence.sparesLeadTimeDays,
+      serviceLevel: evidence.serviceLevel,
+    }),
+    alarms: alarmFindings(alarmState),
   };
 }
 
-function trendTests(histories: readonly History[]): Pick<Findings['trend'], 'laplace' | 'militaryHandbook'> {
+function extentOf(
+  evidence: ClassEvidence,
+  everyPosition: readonly Position[],
+  life: LifeHistories,
+): Findings['extent'] {
+  return {
+    positions: everyPosition.length,
+    rateOnlyPositions: evidence.rateOnlyPositions.length,
+    groupFailures: evidence.groups.failures,
+    undatedGroupFailures: evidence.groups.undatedFailures,
+    positionsWithAssumedClock: evidence.positionsWithAssumedClock,
+    watchedFrom: earliestWatch(everyPosition),
+    now: evidence.now,
+    plannedRenewals: countPlannedRenewals(everyPosition),
+    lives: life.lives,
+    livesEndedByFailure: life.livesEndedByFailure,
+    livesEndedByPlannedRenewal: life.livesEndedByPlannedRenewal,
+    livesLeftOut: life.livesLeftOut,
+    livesDatedByRecord: life.datedByRecord,
+    conflictingDates: life.conflictingDates,
+    zeroLives: life.zeroLives,
+  };
+}
+
+function trendFindings(
+  histories: readonly History[],
+  slope: PowerLawFit | NoPowerLawFit,
+  pooled: PooledExposure,
+): Findings['trend'] {
   const laplace = laplaceTest(histories);
   const military = militaryHandbookTest(histories);
+  const failureExposures = pooled.failures.map(({ exposure }) => exposure);
   return {
     laplace: laplace && { u: laplace.u, p: laplace.pTwoSided, failures: laplace.failures },
     militaryHandbook: military && {
@@ -94,42 +143,23 @@ function trendTests(histories: readonly History[]): Pick<Findings['trend'], 'lap
       degreesOfFreedom: military.degreesOfFreedom,
       p: military.pTwoSided,
     },
-  };
-}
-
-function shapeFit(fit: PowerLawFit | NoPowerLawFit, which: string): ShapeFit {
-  if (fit.kind === 'cannot-be-estimated') {
-    const failures = 'failures' in fit.reason ? fit.reason.failures : 0;
-    return { kind: fit.kind, reason: noFitSentence(fit.reason, which), failures };
-  }
-  return {
-    kind: 'fit',
-    shape: fit.shape,
-    scale: fit.scale,
-    shapeInterval: { low: fit.interval.low, high: fit.interval.high },
-    lnShapeStandardError: fit.lnShapeStandardError,
-    logLikelihood: fit.logLikelihood,
-    failures: fit.failures,
+    slope: toShapeFit(slope, 'on record'),
+    failureExposures,
+    totalExposure: pooled.totalExposure,
+    silence: silence(failureExposures, pooled.totalExposure),
   };
 }
 
 function lifeFindings(life: LifeHistories): Findings['life'] {
-  const { histories } = life;
-  const powerLaw = fitPowerLaw(histories);
-  const fit = shapeFit(powerLaw, 'of known age');
-  const exponential = fitExponential(histories);
-  const test =
-    powerLaw.kind === 'fit' && exponential !== null ? likelihoodRatio(powerLaw, exponential) : null;
-  const { bands, longestAge } = piecewiseHazard(histories);
+  const estimates = estimateLife(life.histories);
+  const { fit } = estimates;
+  const { bands, longestAge } = piecewiseHazard(life.histories);
   const settle = failuresToSettle(fit.failures, fit.kind === 'fit' ? fit.lnShapeStandardError : null);
   return {
-    fit,
-    memorylessTest: test && { statistic: test.statistic, p: test.pTwoSided, pWearOut: test.pWearOut },
-    meanLife: powerLaw.kind === 'fit' ? finiteOrNull(weibullMeanLife(powerLaw)) : null,
-    tenthGone: powerLaw.kind === 'fit' ? finiteOrNull(weibullB10(powerLaw)) : null,
+    ...estimates,
     hazardBands: bands.map((band) => ({ ...band })),
     longestAge,
-    failuresToSettle: histories.length === 0 ? null : { total: settle.total, more: settle.more },
+    failuresToSettle: life.histories.length === 0 ? null : { total: settle.total, more: settle.more },
   };
 }
 
@@ -138,7 +168,7 @@ function ageRank(positions: readonly Position[]): Findings['ageRank'] {
   const withPeers = test.marks.filter(({ size }) => size > 1);
   const youngerPeers = withPeers.map(({ share, size }) => (share * size - 0.5) / (size - 1));
   return {
-    marks: test.marks.map(({ share, size, at, positionId }) => ({ share, peers: size, at, positionId })),
+    marks: test.marks.map(({ share, size, at }) => ({ share, peers: size, at })),
     meanShare: test.meanShare,
     meanYoungerPeers: withPeers.length === 0 ? null : mean(youngerPeers),
     z: test.z,
@@ -146,6 +176,25 @@ function ageRank(positions: readonly Position[]): Findings['ageRank'] {
     weightless: test.weightless,
     ageUnknown: test.unknownAge,
   };
+}
+
+function scatterFindings(
+  { places, visits, groups }: ClassEvidence,
+  positions: readonly Position[],
+  fits: Pick<Parameters<typeof findScatter>[0], 'pooled' | 'asset' | 'life'>,
+): Findings['scatter'] {
+  const nowhere = { tag: 'not known', siteId: '', siteName: 'not known' };
+  return findScatter({
+    positions,
+    placeOf: (positionId) => places.get(positionId) ?? nowhere,
+    visitsOf: (positionId) => visits.get(positionId) ?? [],
+    groups: {
+      assets: groups.assets,
+      items: groups.items,
+      itemsOfUnknownAge: groups.itemsOfUnknownAge,
+    },
+    ...fits,
+  });
 }
 
 function failureRate(failures: number, exposure: number): FailureRate {
@@ -170,9 +219,19 @@ function silence(failureExposures: readonly number[], total: number): Findings['
   };
 }
 
+/** A life's last failure renewed the item where it ended the life; all others were patched. */
+function patchedShare({ histories, livesEndedByFailure }: LifeHistories): number {
+  const failures = histories.reduce((sum, history) => sum + history.failures.length, 0);
+  return failures === 0 ? 0 : 1 - livesEndedByFailure / failures;
+}
+
+function shapeOf(fit: PowerLawFit | NoPowerLawFit): number | null {
+  return fit.kind === 'fit' ? fit.shape : null;
+}
+
 function earliestWatch(positions: readonly Position[]): number | null {
   const earliest = positions.reduce((least, { watchFrom }) => Math.min(least, watchFrom), Infinity);
-  return finiteOrNull(earliest);
+  return Number.isFinite(earliest) ? earliest : null;
 }
 
 function countPlannedRenewals(positions: readonly Position[]): number {
@@ -181,19 +240,6 @@ function countPlannedRenewals(positions: readonly Position[]): number {
   return positions.reduce((sum, position) => sum + within(position).length, 0);
 }
 
-function exposureBeyond(histories: readonly History[], age: number): number {
-  return histories.reduce((sum, { entry, exit }) => sum + Math.max(0, exit - Math.max(entry, age)), 0);
-}
-
-function upperQuartile(ages: readonly number[]): number | null {
-  const sorted = Float64Array.from(ages).sort();
-  return sorted[Math.ceil(0.75 * sorted.length) - 1] ?? null;
-}
-
 function mean(values: readonly number[]): number {
   return values.reduce((sum, value) => sum + value, 0) / values.length;
-}
-
-function finiteOrNull(value: number): number | null {
-  return Number.isFinite(value) ? value : null;
 }

@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { proposalSchema } from './proposal';
 import { trends } from './trend';
 import { verdicts } from './verdict';
 
@@ -10,6 +11,16 @@ export const cautionCodes = [
   'ages-unknown',
   'clock-assumed',
   'logging-gap',
+  'mixed-ages',
+  'same-cause',
+  'few-bad-positions',
+  'mixed-modes',
+  'poor-fit',
+  'beyond-data',
+  'after-visit',
+  'zero-lives',
+  'rounded-dates',
+  'costs-missing',
 ] as const;
 export type CautionCode = (typeof cautionCodes)[number];
 
@@ -34,9 +45,13 @@ export const conclusionSchema = z.object({
   answers: z.object({
     trend: z.object({ short: z.string(), sentence: z.string() }),
     age: z.object({ short: z.string(), sentence: z.string() }),
+    schedule: z.object({ short: z.string(), sentence: z.string() }),
   }),
   /** The two questions read together. */
   together: z.string(),
   cautions: z.array(caution),
+  /** Of the failure modes with enough failures, in the order of the findings. */
+  modes: z.array(z.object({ modeId: z.string(), verdict: z.enum(verdicts) })),
+  proposal: proposalSchema,
 });
 export type Conclusion = z.infer<typeof conclusionSchema>;

@@ -1,5 +1,12 @@
 import { z } from 'zod';
+import { alarmFindingsSchema } from './alarm-findings';
 import { leftOutReasons } from './class-evidence';
+import { forecastFindingsSchema } from './forecast-findings';
+import { lifeEstimatesSchema } from './life-estimates';
+import { modesFindingsSchema } from './mode-findings';
+import { scatterFindingsSchema } from './scatter-findings';
+import { scheduleFindingsSchema } from './schedule-findings';
+import { openIntervalSchema, shapeFitSchema } from './shape-fit';
 
 /**
  * The estimates of one class on one night, before any judgement: numbers only, as they are stored.
@@ -8,31 +15,13 @@ import { leftOutReasons } from './class-evidence';
  * had, the field says why instead of holding a stand-in.
  */
 
-/** An end that the data leave open is null. */
-const openInterval = z.object({ low: z.number().nullable(), high: z.number().nullable() });
-
-const shapeFit = z.discriminatedUnion('kind', [
-  z.object({
-    kind: z.literal('fit'),
-    shape: z.number(),
-    scale: z.number(),
-    shapeInterval: openInterval,
-    /** Standard error of ln shape. */
-    lnShapeStandardError: z.number(),
-    logLikelihood: z.number(),
-    failures: z.number().int(),
-  }),
-  z.object({ kind: z.literal('cannot-be-estimated'), reason: z.string(), failures: z.number().int() }),
-]);
-export type ShapeFit = z.infer<typeof shapeFit>;
-
 /** Failures in an exposure, and the mean time between them with its 90 % interval. */
 const failureRate = z.object({
   failures: z.number().int(),
   exposure: z.number(),
   /** Null without a failure: then only the lower end is known. */
   meanTime: z.number().nullable(),
-  meanTimeInterval: z.object({ low: z.number().nullable(), high: z.number().nullable() }),
+  meanTimeInterval: openIntervalSchema,
 });
 export type FailureRate = z.infer<typeof failureRate>;
 
@@ -52,7 +41,6 @@ export const findingsSchema = z.object({
     positions: z.number().int(),
     /** Of these, items of quantity assets whose ages cannot be told apart. */
     rateOnlyPositions: z.number().int(),
-    groupItems: z.number().int(),
     groupFailures: z.number().int(),
     undatedGroupFailures: z.number().int(),
     positionsWithAssumedClock: z.number().int(),
@@ -76,34 +64,22 @@ export const findingsSchema = z.object({
     militaryHandbook: z
       .object({ statistic: z.number(), degreesOfFreedom: z.number().int(), p: z.number() })
       .nullable(),
-    slope: shapeFit,
+    slope: shapeFitSchema,
     /** Where on the pooled exposure clock each failure stands, ascending. */
     failureExposures: z.array(z.number()),
     totalExposure: z.number(),
-    /** Exposure since the last failure, or since the start when there was none, and its chance at the fitted rate. */
+    /** Exposure since the last failure, and the chance of such a silence at the rate before; null without a failure. */
     silence: z.object({ exposure: z.number(), chance: z.number() }).nullable(),
   }),
   life: z.object({
-    fit: shapeFit,
-    /** Likelihood-ratio test of shape 1; pWearOut is one-sided against shape > 1. */
-    memorylessTest: z.object({ statistic: z.number(), p: z.number(), pWearOut: z.number() }).nullable(),
-    /** Median life and the age by which one in ten has failed, in clock units. */
-    meanLife: z.number().nullable(),
-    tenthGone: z.number().nullable(),
+    ...lifeEstimatesSchema.shape,
     hazardBands: z.array(hazardBand),
     longestAge: z.number(),
     failuresToSettle: z.object({ total: z.number().int(), more: z.number().int() }).nullable(),
   }),
   ageRank: z.object({
-    /** One mark a failure, in order of time: rank share, peers under watch, moment, the asset it happened to. */
-    marks: z.array(
-      z.object({
-        share: z.number(),
-        peers: z.number().int(),
-        at: z.number(),
-        positionId: z.string(),
-      }),
-    ),
+    /** One mark a failure, in order of time: rank share, peers under watch, moment. */
+    marks: z.array(z.object({ share: z.number(), peers: z.number().int(), at: z.number() })),
     meanShare: z.number().nullable(),
     /** The share of the others that were younger, on average; what "older than 78 % of the others" says. */
     meanYoungerPeers: z.number().nullable(),
@@ -112,12 +88,16 @@ export const findingsSchema = z.object({
     weightless: z.number().int(),
     ageUnknown: z.number().int(),
   }),
-  schedule: z.object({
+  renewals: z.object({
     /** The age by which three planned renewals in four have happened; null without any. */
-    usualRenewalAge: z.number().nullable(),
+    usualAge: z.number().nullable(),
     exposureBeyondUsualAge: z.number(),
     lifeExposure: z.number(),
   }),
+  modes: modesFindingsSchema,
+  scatter: scatterFindingsSchema,
+  schedule: scheduleFindingsSchema,
+  forecast: forecastFindingsSchema,
+  alarms: alarmFindingsSchema,
 });
 export type Findings = z.infer<typeof findingsSchema>;
-export type HazardBand = z.infer<typeof hazardBand>;

@@ -1,9 +1,12 @@
+import { withArticle } from '~/format/article';
 import { formatClock, formatCount, formatFixed, formatNoun, formatPercent } from '~/format/number';
-import { maskedBeyond } from './cautions/masked-by-schedule';
+import { capitalised } from './capitalised';
+import { modesDiffer } from './cautions/mixed-modes';
 import type { ClassFacts, ClassMarks } from './class-facts';
 import { clockUnit } from './clock-unit';
 import type { Conclusion } from './conclusion';
 import type { Findings } from './findings';
+import { maskedAge } from './masking';
 import { fewestFailuresForVerdict } from './verdict';
 
 type Headline = Conclusion['headline'];
@@ -22,7 +25,7 @@ function claimOf({ verdict, marks, findings }: ClassFacts): string {
     case 'early-life':
       return `${items} fail young.`;
     case 'memoryless': {
-      const masked = maskedBeyond(findings);
+      const masked = maskedAge(findings);
       const until = masked === null ? '' : ` up to ${formatClock(masked, clockUnit(findings.clock))}`;
       return `${items} fail at a constant rate${until}, whatever their age.`;
     }
@@ -103,7 +106,7 @@ export function ageAnswer(facts: ClassFacts): Answer {
     case 'wear-out':
       return {
         short: 'Yes.',
-        sentence: `The older ${anItem(marks.itemSingular)} is, the likelier it is to fail in the next week.`,
+        sentence: `The older ${withArticle(marks.itemSingular)} is, the likelier it is to fail in the next week.`,
       };
     case 'memoryless':
       return {
@@ -134,7 +137,13 @@ function undecidedBecause(fit: Findings['life']['fit'], marks: ClassMarks, findi
 }
 
 /** The two questions read together: what their answers mean side by side. */
-export function togetherSentence({ verdict, trend, marks }: ClassFacts): string {
+export function togetherSentence({ verdict, trend, marks, modeVerdicts }: ClassFacts): string {
+  if (modesDiffer(modeVerdicts)) {
+    return 'The failure modes are unlike: what they say together holds for none of them.';
+  }
+  if ((marks.statutory || marks.endangersPeople) && trend !== 'rising' && trend !== 'falling') {
+    return 'What follows from this for its maintenance is for the local code and a licensed practitioner to say.';
+  }
   if (trend === 'falling')
     return 'The class fails less often than it did. Find out what improved before changing anything.';
   if (trend === 'rising' && verdict === 'wear-out') {
@@ -149,12 +158,4 @@ export function togetherSentence({ verdict, trend, marks }: ClassFacts): string 
   if (verdict === 'early-life')
     return `Every replacement starts the risky time anew: a schedule would make it worse.`;
   return 'Not enough is known for a change of schedule.';
-}
-
-function anItem(singular: string): string {
-  return `${/^[aeiou]/i.test(singular) ? 'an' : 'a'} ${singular}`;
-}
-
-function capitalised(words: string): string {
-  return words.charAt(0).toUpperCase() + words.slice(1);
 }

@@ -1,3 +1,4 @@
+import { withArticle } from '~/format/article';
 import { formatCount, formatInterval, formatNoun, formatNumber, formatTrimmed } from '~/format/number';
 import { XAxis, YAxis } from './axes';
 import { ChartAbsent, ChartFigure, type ChartTable } from './chart-figure';
@@ -84,7 +85,7 @@ function sentenceFor({ bands, notSeenFrom }: Usable, itemNoun: string, ageUnit: 
   const seen =
     bands.length === 0
       ? `The fitted rate at which a ${itemNoun} of each age fails.`
-      : `How often a ${itemNoun} of that age fails, from ${formatNoun(failures, 'failure')} in ${formatNoun(bands.length, 'age band')}, with 90\u202f% intervals and the fitted curve.`;
+      : `How often ${withArticle(itemNoun)} of that age fails, from ${formatNoun(failures, 'failure')} in ${formatNoun(bands.length, 'age band')}, with 90\u202f% intervals and the fitted curve.`;
   return notSeenFrom === undefined
     ? seen
     : `${seen} Beyond ${formatTrimmed(notSeenFrom)} ${ageUnit} nothing is known.`;

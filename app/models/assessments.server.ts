@@ -67,30 +67,29 @@ function columnsOf(findings: Findings, conclusion: Conclusion) {
 
 /**
  * Puts a run's assessments in force, all at once. Those of an earlier run as of the same day give way; a
- * later day's stay in force, so that looking back at a past night changes nothing of today.
+ * later day's stay in force, so that looking back at a past night changes nothing of today. Call it in a
+ * transaction.
  */
 export async function finishRun(db: Database, runId: string, asOf: string): Promise<void> {
-  await db.transaction(async (trx) => {
-    await trx.raw(
-      `update asset_classes c set current_assessment_id = a.id
-         from assessments a
-        where a.run_id = :runId and c.id = a.class_id
-          and not exists (select from assessments held
-                           where held.id = c.current_assessment_id and held.as_of > a.as_of)`,
-      { runId },
-    );
-    await trx.raw(
-      `delete from assessments a using assessments fresh
-        where fresh.run_id = :runId and a.class_id = fresh.class_id and a.as_of = :asOf and a.run_id <> :runId`,
-      { runId, asOf },
-    );
-    await trx.raw(
-      `update job_runs set state = 'finished', finished_at = now(),
-              classes_computed = (select count(*) from assessments where run_id = :runId)
-        where id = :runId`,
-      { runId },
-    );
-  });
+  await db.raw(
+    `update asset_classes c set current_assessment_id = a.id
+       from assessments a
+      where a.run_id = :runId and c.id = a.class_id
+        and not exists (select from assessments held
+                         where held.id = c.current_assessment_id and held.as_of > a.as_of)`,
+    { runId },
+  );
+  await db.raw(
+    `delete from assessments a using assessments fresh
+      where fresh.run_id = :runId and a.class_id = fresh.class_id and a.as_of = :asOf and a.run_id <> :runId`,
+    { runId, asOf },
+  );
+  await db.raw(
+    `update job_runs set state = 'finished', finished_at = now(),
+            classes_computed = (select count(*) from assessments where run_id = :runId)
+      where id = :runId`,
+    { runId },
+  );
 }
 
 /** Drops what runs left behind that never finished. */

@@ -20,6 +20,7 @@ export interface AssetRow {
   id: string;
   tag: string;
   siteId: string;
+  siteName: string;
   quantity: number;
   inServiceOn: string;
   watchedFrom: string;
@@ -123,10 +124,10 @@ async function readClass(db: Database, classId: string): Promise<ClassRow> {
 
 async function readAssets(db: Database, classId: string): Promise<AssetRow[]> {
   const { rows } = await db.raw<{ rows: AssetRow[] }>(
-    `select id, tag, site_id as "siteId", quantity, in_service_on as "inServiceOn",
-            watched_from as "watchedFrom", watched_until as "watchedUntil", retired_on as "retiredOn",
-            item_fitted_on as "itemFittedOn", duty_hours_per_day as "dutyHoursPerDay"
-       from assets where class_id = ? order by id`,
+    `select a.id, a.tag, a.site_id as "siteId", s.name as "siteName", a.quantity, a.in_service_on as "inServiceOn",
+            a.watched_from as "watchedFrom", a.watched_until as "watchedUntil", a.retired_on as "retiredOn",
+            a.item_fitted_on as "itemFittedOn", a.duty_hours_per_day as "dutyHoursPerDay"
+       from assets a join sites s on s.id = a.site_id where a.class_id = ? order by a.id`,
     [classId],
   );
   return rows;

@@ -1,4 +1,4 @@
-import type { ClassEvidence, LeftOutReason } from '~/advice/class-evidence';
+import type { ClassEvidence, LeftOutReason, Place } from '~/advice/class-evidence';
 import type { Position, PositionEvent } from '~/reliability/position';
 import type { Usage } from '~/reliability/usage';
 import { assetUsage } from './asset-usage';
@@ -15,10 +15,14 @@ type LeaveOut = (reason: LeftOutReason, count?: number) => void;
  * Lays a class's records out as positions on day numbers: one for an asset of quantity 1, as many as there
  * are items for a quantity asset.
  *
- * @param asOf last complete day whose records count.
+ * @param night.asOf last complete day whose records count.
+ * @param night.serviceLevel of the organisation, for the spares to hold.
  * @throws RangeError for a number that no check of the database lets in.
  */
-export function layOutClass(records: ClassRecords, asOf: string): ClassEvidence {
+export function layOutClass(
+  records: ClassRecords,
+  { asOf, serviceLevel }: { asOf: string; serviceLevel: number },
+): ClassEvidence {
   const { assetClass, modes, renewalTask } = records;
   const now = dayNumber(asOf) + 1;
   const leftOut = new Map<LeftOutReason, number>();
@@ -31,9 +35,9 @@ export function layOutClass(records: ClassRecords, asOf: string): ClassEvidence 
 
   const positions: Position[] = [];
   const rateOnlyPositions: Position[] = [];
-  const places = new Map<string, { label: string; siteId: string }>();
+  const places = new Map<string, Place>();
   const visits = new Map<string, number[]>();
-  const groups = { items: 0, failures: 0, undatedFailures: 0 };
+  const groups = { assets: 0, items: 0, itemsOfUnknownAge: 0, failures: 0, undatedFailures: 0 };
   let assumed = 0;
 
   for (const asset of records.assets) {
@@ -64,11 +68,13 @@ export function layOutClass(records: ClassRecords, asOf: string): ClassEvidence 
       const group = layOutGroup({ id: asset.id, quantity: asset.quantity, fitted, frame, events });
       (group.agesKnown ? positions : rateOnlyPositions).push(...group.positions);
       laidOut.push(...group.positions);
+      groups.assets += 1;
       groups.items += asset.quantity;
+      groups.itemsOfUnknownAge += group.itemsOfUnknownAge;
       groups.failures += group.failures;
       groups.undatedFailures += group.undatedFailures;
     }
-    for (const { id } of laidOut) places.set(id, { label: asset.tag, siteId: asset.siteId });
+    for (const { id } of laidOut) places.set(id, { tag: asset.tag, siteId: asset.siteId, siteName: asset.siteName });
     if (asset.quantity === 1) visits.set(asset.id, visitsOf(own, frame));
     if (clock.isAssumed && assetClass.clock === 'operating-hours') assumed += laidOut.length;
   }
@@ -88,6 +94,7 @@ export function layOutClass(records: ClassRecords, asOf: string): ClassEvidence 
       groupPlannedMinor: assetClass.groupPlannedCostMinor,
     },
     sparesLeadTimeDays: assetClass.sparesLeadTimeDays,
+    serviceLevel,
     requiredAvailability: assetClass.requiredAvailability,
     currentTask: renewalTask && {
       name: renewalTask.name,
@@ -206,10 +213,10 @@ function fittedAtOf(record: RecordRow, at: number, usage: Usage): number | null 
   return pacePerDay > 0 ? at - record.itemAge / pacePerDay : null;
 }
 
-/** When somebody came by plan, whatever they did; voided visits did not happen. */
+/** When somebody came by plan and renewed nothing; voided visits did not happen. */
 function visitsOf(records: readonly RecordRow[], frame: Frame): number[] {
   return records
-    .filter(({ source, voided }) => source === 'planned-work' && !voided)
+    .filter(({ source, renewed, voided }) => source === 'planned-work' && !renewed && !voided)
     .map((record) => momentOf(record, dayNumber(record.day), frame))
     .filter((at) => at >= frame.watchFrom && at < frame.watchTo);
 }

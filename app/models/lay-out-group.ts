@@ -20,6 +20,8 @@ export interface LaidOutGroup {
   readonly positions: readonly Position[];
   /** Whether every life that ended can be told from the others; if not, only the class's rate can be judged. */
   readonly agesKnown: boolean;
+  /** Items whose age was not known when the watch opened; all of them where lives cannot be told apart. */
+  readonly itemsOfUnknownAge: number;
   readonly failures: number;
   /** Failures of which nobody can say how old the failed item was. */
   readonly undatedFailures: number;
@@ -50,8 +52,7 @@ export function layOutGroup({ id, quantity, fitted, frame, events }: Group): Lai
   let turn = 0;
 
   for (const { items, ...event } of events) {
-    const isFailure = event.kind === 'failure-renewed' || event.kind === 'failure-patched';
-    if (isFailure && event.at > frame.watchFrom) failures += 1;
+    if (isFailure(event) && event.at > frame.watchFrom) failures += 1;
     if (event.kind === 'planned-renewal' && (items === null || items >= quantity)) {
       for (const socket of sockets) renew(socket, event);
       continue;
@@ -59,7 +60,7 @@ export function layOutGroup({ id, quantity, fitted, frame, events }: Group): Lai
     for (let taken = 0; taken < (items ?? 1); taken += 1) {
       const named = socketFor(sockets, event.itemFittedAt);
       if (named === null) {
-        if (isFailure) undatedFailures += 1;
+        if (isFailure(event)) undatedFailures += 1;
         else undatedRenewals += 1;
       }
       const socket = named ?? sockets[turn++ % quantity]!;
@@ -67,17 +68,30 @@ export function layOutGroup({ id, quantity, fitted, frame, events }: Group): Lai
     }
   }
 
+  const agesKnown = undatedFailures + undatedRenewals === 0;
   return {
     positions: sockets.map((socket, index) => ({
       ...frame,
       id: `${id}#${index + 1}`,
       fittedAt: socket.firstFittedAt,
-      events: socket.events,
+      events: agesKnown ? socket.events : failuresOnly(socket.events),
     })),
-    agesKnown: undatedFailures + undatedRenewals === 0,
+    agesKnown,
+    itemsOfUnknownAge: agesKnown
+      ? sockets.filter(({ firstFittedAt }) => firstFittedAt === null).length
+      : quantity,
     failures,
     undatedFailures,
   };
+}
+
+/** Where nobody can tell which life ended, a failure still counts and a renewal says nothing. */
+function failuresOnly(events: readonly PositionEvent[]): PositionEvent[] {
+  return events.filter(isFailure).map((event) => ({ ...event, kind: 'failure-patched', itemFittedAt: null }));
+}
+
+function isFailure({ kind }: PositionEvent): boolean {
+  return kind === 'failure-renewed' || kind === 'failure-patched';
 }
 
 function socketsOf(

@@ -1,26 +1,31 @@
+import type { ReactNode } from 'react';
 import { href, Link } from 'react-router';
 import { cautionNames } from '~/advice/caution-names';
 import { classFigures } from '~/advice/class-figures';
 import type { Caution } from '~/advice/conclusion';
 import { Breadcrumbs } from '~/components/breadcrumbs';
 import { LinkButton } from '~/components/button';
-import { CautionList } from '~/components/caution-list';
+import { AlarmNotices } from '~/components/class-page/alarm-notices';
+import { ExpectedFailures } from '~/components/class-page/expected-failures';
+import { FailureModes } from '~/components/class-page/failure-modes';
 import { QuestionAge } from '~/components/class-page/question-age';
 import { exposureUnitName, QuestionTrend } from '~/components/class-page/question-trend';
+import { QuestionSchedule } from '~/components/class-page/question-schedule';
 import { RestsOn } from '~/components/class-page/rests-on';
+import { WhatToDo } from '~/components/class-page/what-to-do';
 import { EmptyState } from '~/components/empty-state';
 import { FactStrip } from '~/components/fact-strip';
 import { formatCount, formatNoun, formatTrimmed } from '~/format/number';
 import { formatCalendarDate } from '~/format/date';
 import { Notice } from '~/components/notice';
-import { QuestionSection } from '~/components/question-section';
 import { VERDICT_COLOUR } from '~/components/verdict';
 import { VerdictGlyph } from '~/components/verdict-glyph';
+import { listAlarms } from '~/models/alarms.server';
 import { currentAssessment, type Assessment } from '~/models/assessments.server';
 import { readClassHead } from '~/models/class-list.server';
 import { dayOf } from '~/models/day-number';
 import { currentProblem } from '~/models/job-runs.server';
-import { requireViewer } from '~/services/viewer.server';
+import { organisation, requireViewer } from '~/services/viewer.server';
 import { database } from '../../db/connection';
 import type { Route } from './+types/class';
 
@@ -33,13 +38,19 @@ export async function loader({ context, request, params }: Route.LoaderArgs) {
   const db = database();
   const head = await readClassHead(db, viewer.siteIds, params.classId);
   if (head === null) throw new Response('There is no such class.', { status: 404 });
-  const [assessment, problem] = await Promise.all([
+  const [assessment, problem, alarms] = await Promise.all([
     currentAssessment(db, params.classId),
     currentProblem(db, params.classId),
+    listAlarms(db, viewer.siteIds, { classId: params.classId }),
   ]);
+  const { currency, timeZone } = organisation(context);
   return {
     head,
     problem,
+    alarms,
+    currency,
+    timeZone,
+    mayClear: viewer.roles.includes('lead'),
     mayEdit: viewer.roles.some((role) => role === 'lead' || role === 'admin'),
     assessment: assessment && view(assessment),
   };
@@ -66,7 +77,7 @@ type View = ReturnType<typeof view>;
 type Head = Route.ComponentProps['loaderData']['head'];
 
 export default function ClassPage({ loaderData }: Route.ComponentProps) {
-  const { head, problem, assessment, mayEdit } = loaderData;
+  const { head, problem, assessment, alarms, mayEdit, mayClear, currency, timeZone } = loaderData;
   return (
     <article>
       <Breadcrumbs crumbs={[{ label: 'Classes', to: href('/classes') }, { label: placesOf(head) }]} />
@@ -83,7 +94,14 @@ export default function ClassPage({ loaderData }: Route.ComponentProps) {
           </EmptyState>
         </>
       ) : (
-        <Assessed head={head} assessment={assessment} />
+        <Assessed head={head} assessment={assessment} currency={currency} mayEdit={mayEdit}>
+          <AlarmNotices
+            alarms={alarms}
+            itemPlural={head.itemPlural}
+            mayClear={mayClear}
+            timeZone={timeZone}
+          />
+        </Assessed>
       )}
       <p className="no-print mt-6 flex flex-wrap gap-3">
         <LinkButton tone="quiet" to={href('/classes/:classId/records', { classId: head.id })}>
@@ -112,14 +130,23 @@ function CautionsAtAGlance({ cautions }: { cautions: readonly Caution[] }) {
   if (cautions.length === 0) return null;
   return (
     <p className="mb-3">
-      <a href="#what-it-means" className="inline-flex min-h-11 items-center gap-1">
+      <a href="#what-to-do" className="inline-flex min-h-11 items-center gap-1">
         {formatNoun(cautions.length, 'caution')}: {cautions.map(({ code }) => cautionNames[code]).join(', ')}
       </a>
     </p>
   );
 }
 
-function Assessed({ head, assessment }: { head: Head; assessment: View }) {
+interface AssessedProps {
+  head: Head;
+  assessment: View;
+  currency: string;
+  mayEdit: boolean;
+  /** What stands between the sentence and the questions. */
+  children: ReactNode;
+}
+
+function Assessed({ head, assessment, currency, mayEdit, children }: AssessedProps) {
   const { conclusion, findings, figures, ageRank, asOf, watchedSince } = assessment;
   const { itemSingular, itemPlural } = head;
   return (
@@ -133,6 +160,7 @@ function Assessed({ head, assessment }: { head: Head; assessment: View }) {
         {conclusion.headline.support}
       </p>
       <CautionsAtAGlance cautions={conclusion.cautions} />
+      {children}
       <FactStrip
         facts={[
           { value: conclusion.verdict, label: 'verdict' },
@@ -159,14 +187,18 @@ function Assessed({ head, assessment }: { head: Head; assessment: View }) {
         figures={figures.hazard}
         itemSingular={itemSingular}
       />
-      <QuestionSection
-        id="what-it-means"
-        title="What it means"
-        words={<p className="text-grey text-[0.92rem]">Cautions first. They are part of the advice.</p>}
-      >
-        <CautionList cautions={conclusion.cautions} />
-        <p className="mt-5 text-[1.2rem] leading-snug">{conclusion.together}</p>
-      </QuestionSection>
+      <QuestionSchedule
+        answer={conclusion.answers.schedule}
+        clock={findings.clock}
+        schedule={findings.schedule}
+        currency={currency}
+        costsLink={
+          mayEdit && <Link to={href('/classes/:classId/settings', { classId: head.id })}>Give the costs</Link>
+        }
+      />
+      <WhatToDo conclusion={conclusion} />
+      <FailureModes modes={findings.modes} verdicts={conclusion.modes} clock={findings.clock} />
+      <ExpectedFailures forecast={findings.forecast} itemPlural={itemPlural} />
       <RestsOn findings={findings} itemSingular={itemSingular} watchedSince={watchedSince}>
         <p>
           <Link to={href('/classes/:classId/records', { classId: head.id })}>

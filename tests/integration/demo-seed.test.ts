@@ -4,6 +4,7 @@ import { seedDemo } from '../../db/seeds/demo';
 import { generateDemo } from '../../fixtures/demo/generate';
 import { demoPeople } from '../../fixtures/demo/people';
 import { truths } from '../../fixtures/demo/truth';
+import { readOrganisation } from '~/models/organisation.server';
 import { runNightly } from '../../jobs/nightly';
 import type { Database } from '../../db/connection';
 import { createTestDatabase, type TestDatabase } from '../support/test-database';
@@ -54,7 +55,7 @@ describe('the demo in the database', () => {
   });
 
   it('gets from the nightly job the verdicts that its truth asks for', async () => {
-    await runNightly(db, { asOf: yesterday, timeZone: 'Europe/London' });
+    await runNightly(db, { asOf: yesterday, organisation: await readOrganisation(db) });
     const rows = await db('asset_classes')
       .join('assessments', 'assessments.id', 'asset_classes.current_assessment_id')
       .select<{ name: string; verdict: string; trend: string }[]>('name', 'verdict', 'trend');

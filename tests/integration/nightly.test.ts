@@ -27,7 +27,8 @@ afterEach(async () => {
   await db.raw('truncate failures, planned_work, assets, asset_classes, job_runs, assessments cascade');
 });
 
-const night = { asOf: '2026-06-30', timeZone: 'Europe/London' };
+const organisation = { timeZone: 'Europe/London', currency: 'GBP', serviceLevel: 0.95 };
+const night = { asOf: '2026-06-30', organisation };
 
 /** Pumps that fail at ages around a year and a half, with a planned renewal here and there. */
 async function fillClass(): Promise<string[]> {
@@ -114,6 +115,17 @@ describe('the nightly job', () => {
     expect(await currentProblem(db, odd)).toBe(problems[0]?.reason);
     expect(await currentAssessment(db, odd)).toBeNull();
     expect(await currentAssessment(db, classId)).not.toBeNull();
+  });
+
+  it('fails whole when not one class can be computed', async () => {
+    await fillClass();
+    await db.raw(`alter table assessments add constraint refuse check (as_of < '2026-01-01')`);
+    try {
+      await expect(runNightly(db, night)).rejects.toThrow('None of the 1 classes could be computed.');
+      expect((await listRuns(db, 1))[0]).toMatchObject({ state: 'failed' });
+    } finally {
+      await db.raw('alter table assessments drop constraint refuse');
+    }
   });
 
   it('leaves the previous night in force when a run is cut off, and the next one completes', async () => {

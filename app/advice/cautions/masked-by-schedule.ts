@@ -2,16 +2,14 @@ import { formatClock, formatPercent } from '~/format/number';
 import { clockUnit } from '../clock-unit';
 import type { ClassFacts } from '../class-facts';
 import type { Caution } from '../conclusion';
-
-const mostLives = 0.5;
-const littleExposure = 0.05;
+import { maskedAge } from '../masking';
 
 /**
  * Planned renewals end at least half of all lives, and under 5 % of the exposure lies beyond the age at
  * which they usually come: the data say nothing about older items (Nowlan & Heap 1978).
  */
 export function maskedBySchedule({ findings, marks }: ClassFacts): Caution | null {
-  const age = maskedBeyond(findings);
+  const age = maskedAge(findings);
   if (age === null) return null;
   const { lives, livesEndedByPlannedRenewal } = findings.extent;
   const until = formatClock(age, clockUnit(findings.clock));
@@ -22,14 +20,4 @@ export function maskedBySchedule({ findings, marks }: ClassFacts): Caution | nul
     action:
       'To learn more, try a longer interval on a part of the class and watch it; never stop the schedule outright on this.',
   };
-}
-
-/** The age beyond which the schedule hides what would happen, in clock units; null when it does not. */
-export function maskedBeyond({ extent, schedule }: ClassFacts['findings']): number | null {
-  const { usualRenewalAge, exposureBeyondUsualAge, lifeExposure } = schedule;
-  if (usualRenewalAge === null || extent.lives === 0) return null;
-  const masked =
-    extent.livesEndedByPlannedRenewal >= mostLives * extent.lives &&
-    exposureBeyondUsualAge < littleExposure * lifeExposure;
-  return masked ? usualRenewalAge : null;
 }

@@ -2,10 +2,12 @@ import type { ClassFigures } from '~/advice/class-figures';
 import { clockUnit } from '~/advice/clock-unit';
 import type { Conclusion } from '~/advice/conclusion';
 import type { Findings } from '~/advice/findings';
+import type { LifeEstimate } from '~/advice/life-estimates';
 import { AgeRankStrip } from '~/charts/age-rank-strip';
 import { HazardByAgeChart } from '~/charts/hazard-by-age-chart';
+import { Estimate } from '../estimate';
 import { FigureList } from '../figure-list';
-import { formatClock, formatFixed, formatP } from '~/format/number';
+import { formatClock, formatFixed, formatP, formatTrimmed } from '~/format/number';
 import { QuestionSection } from '../question-section';
 import { VERDICT_COLOUR } from '../verdict';
 import { ShapeEstimate } from './shape-estimate';
@@ -48,8 +50,8 @@ export function QuestionAge(props: QuestionAgeProps) {
             items={[
               { name: 'Shape β', value: <ShapeEstimate fit={fit} /> },
               { name: 'Characteristic life', value: inClock(fit.kind === 'fit' ? fit.scale : null) },
-              { name: 'Mean life (MTTF)', value: inClock(meanLife) },
-              { name: 'One in ten gone by', value: inClock(tenthGone) },
+              { name: 'Mean life (MTTF)', value: <LifeLength life={meanLife} unit={unit} /> },
+              { name: 'One in ten gone by (B10)', value: <LifeLength life={tenthGone} unit={unit} /> },
               {
                 name: 'Against a constant rate',
                 value:
@@ -82,5 +84,18 @@ export function QuestionAge(props: QuestionAgeProps) {
         rateUnit={unit === 'hours' ? 'failures per thousand hours' : `failures per ${itemSingular}-year`}
       />
     </QuestionSection>
+  );
+}
+
+function LifeLength({ life, unit }: { life: LifeEstimate; unit: 'days' | 'hours' }) {
+  return (
+    <Estimate
+      value={life?.value ?? null}
+      low={life?.interval.low ?? null}
+      high={life?.interval.high ?? null}
+      format={(value) => formatClock(value, unit)}
+      formatEnd={formatTrimmed}
+      missing="not known"
+    />
   );
 }

@@ -1,4 +1,5 @@
 import type { Findings } from '~/advice/findings';
+import { capitalised } from '~/advice/capitalised';
 import { leftOutSentence } from '~/advice/left-out-sentence';
 import { FigureList } from '../figure-list';
 import { formatCount, formatNoun } from '~/format/number';
@@ -27,7 +28,7 @@ export function RestsOn({ findings, itemSingular, watchedSince, children }: Rest
             { name: 'Positions', value: formatCount(extent.positions) },
             { name: 'Failures', value: formatCount(rate.overall.failures) },
             { name: 'Planned renewals', value: formatCount(extent.plannedRenewals) },
-            { name: `${capital(itemSingular)} lives`, value: formatCount(extent.lives) },
+            { name: `${capitalised(itemSingular)} lives`, value: formatCount(extent.lives) },
             { name: '… ended by failure', value: formatCount(extent.livesEndedByFailure) },
             { name: '… by plan', value: formatCount(extent.livesEndedByPlannedRenewal) },
           ]}
@@ -61,8 +62,4 @@ export function RestsOn({ findings, itemSingular, watchedSince, children }: Rest
       {children}
     </QuestionSection>
   );
-}
-
-function capital(words: string): string {
-  return words.charAt(0).toUpperCase() + words.slice(1);
 }

@@ -1,4 +1,4 @@
-import type { ShapeFit } from '~/advice/findings';
+import type { ShapeFit } from '~/advice/shape-fit';
 import { Estimate } from '../estimate';
 import { formatFixed } from '~/format/number';
 

@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { advanceAlarmState } from '~/advice/advance-alarm-state';
 import type { ClassEvidence } from '~/advice/class-evidence';
 import { computeFindings } from '~/advice/compute-findings';
 import { conclude, decideRun, runTestsOf } from '~/advice/conclude';
@@ -23,12 +24,15 @@ function evidence(positions: readonly Position[], differences: Partial<ClassEvid
     hiddenFailures: false,
     costs: { plannedMinor: null, failureMinor: null, groupPlannedMinor: null },
     sparesLeadTimeDays: null,
+    serviceLevel: 0.95,
     requiredAvailability: null,
     currentTask: null,
     clockUnitsAYear: 365.25,
-    places: new Map(positions.map(({ id }) => [id, { label: id, siteId: 'site-1' }])),
+    places: new Map(
+      positions.map(({ id }) => [id, { tag: id, siteId: 'site-1', siteName: 'Saltmarsh Depot' }]),
+    ),
     visits: new Map(),
-    groups: { items: 0, failures: 0, undatedFailures: 0 },
+    groups: { assets: 0, items: 0, itemsOfUnknownAge: 0, failures: 0, undatedFailures: 0 },
     modes: [],
     leftOut: [],
     ...differences,
@@ -36,9 +40,11 @@ function evidence(positions: readonly Position[], differences: Partial<ClassEvid
 }
 
 function assess(input: ClassEvidence): Conclusion {
-  const findings = findingsSchema.parse(JSON.parse(JSON.stringify(computeFindings(input))));
+  const findings = findingsSchema.parse(
+    JSON.parse(JSON.stringify(computeFindings(input, advanceAlarmState(null, input.positions)))),
+  );
   const [decisions] = decideRun([runTestsOf(findings)]);
-  return conclude(findings, input, decisions!);
+  return conclude(findings, { marks: input, currency: 'GBP' }, decisions!);
 }
 
 const codes = ({ cautions }: Conclusion) => cautions.map(({ code }) => code);
@@ -166,19 +172,19 @@ describe('cautions', () => {
 
 describe('the run', () => {
   it('lets a class pass only if its test holds up among all classes looked at', () => {
-    const alone = decideRun([{ pWearOut: 0.04, pLaplace: 0.2 }]);
-    expect(alone[0]).toEqual({ wearOutPasses: true, laplacePasses: false });
+    const alone = decideRun([{ pWearOut: 0.04, pLaplace: 0.2, pWearOutOfModes: [] }]);
+    expect(alone[0]).toEqual({ wearOutPasses: true, laplacePasses: false, modesWearOutPass: [] });
     const among = decideRun([
-      { pWearOut: 0.04, pLaplace: null },
-      ...Array.from({ length: 9 }, () => ({ pWearOut: 0.5, pLaplace: null })),
+      { pWearOut: 0.04, pLaplace: null, pWearOutOfModes: [] },
+      ...Array.from({ length: 9 }, () => ({ pWearOut: 0.5, pLaplace: null, pWearOutOfModes: [] })),
     ]);
     expect(among[0]!.wearOutPasses).toBe(false);
   });
 
   it('gives a class without a test no pass, and does not count it', () => {
     const decisions = decideRun([
-      { pWearOut: null, pLaplace: null },
-      { pWearOut: 0.09, pLaplace: null },
+      { pWearOut: null, pLaplace: null, pWearOutOfModes: [] },
+      { pWearOut: 0.09, pLaplace: null, pWearOutOfModes: [] },
     ]);
     expect(decisions.map(({ wearOutPasses }) => wearOutPasses)).toEqual([false, true]);
   });

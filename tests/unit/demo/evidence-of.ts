@@ -13,7 +13,7 @@ const dayOrNull = (offset: number | null) => (offset === null ? null : day(offse
 
 /** The evidence of one demo class as of yesterday, laid out as the product lays it out from the database. */
 export function evidenceOf(spec: ClassSpec, records: DemoRecords): ClassEvidence {
-  return layOutClass(classRecordsOf(spec, records), day(-1));
+  return layOutClass(classRecordsOf(spec, records), { asOf: day(-1), serviceLevel: 0.95 });
 }
 
 function classRecordsOf(spec: ClassSpec, { assets, failures, plannedWork }: DemoRecords): ClassRecords {
@@ -35,6 +35,7 @@ function classRecordsOf(spec: ClassSpec, { assets, failures, plannedWork }: Demo
       id: asset.id,
       tag: asset.tag,
       siteId: asset.site,
+      siteName: asset.site,
       quantity: asset.quantity,
       inServiceOn: day(asset.inServiceDay),
       watchedFrom: day(asset.watchedFromDay),

@@ -4,9 +4,10 @@ import { generateDemo } from '../../../fixtures/demo/generate';
 import type { DemoRecords } from '../../../fixtures/demo/records';
 import { truthOf, truths, type ClassTruth } from '../../../fixtures/demo/truth';
 import { evidenceOf } from './evidence-of';
+import { advanceAlarmState } from '~/advice/advance-alarm-state';
 import { computeFindings } from '~/advice/compute-findings';
 import { conclude, decideRun, runTestsOf } from '~/advice/conclude';
-import { cautionCodes, type Conclusion } from '~/advice/conclusion';
+import type { Conclusion } from '~/advice/conclusion';
 import type { Findings } from '~/advice/findings';
 import { lifeHistories } from '~/reliability/life-histories';
 import { fitPowerLaw } from '~/reliability/power-law';
@@ -19,12 +20,16 @@ interface Assessed {
 
 /** One night over all classes, as of yesterday. */
 function assess(demo: DemoRecords): Assessed[] {
-  const findings = classSpecs.map((spec) => computeFindings(evidenceOf(spec, demo)));
+  const findings = classSpecs.map((spec) => {
+    const evidence = evidenceOf(spec, demo);
+    const positions = [...evidence.positions, ...evidence.rateOnlyPositions];
+    return computeFindings(evidence, advanceAlarmState(null, positions));
+  });
   const decisions = decideRun(findings.map(runTestsOf));
   return classSpecs.map((spec, index) => ({
     truth: truthOf(spec.name),
     findings: findings[index]!,
-    conclusion: conclude(findings[index]!, spec, decisions[index]!),
+    conclusion: conclude(findings[index]!, { marks: spec, currency: 'GBP' }, decisions[index]!),
   }));
 }
 
@@ -45,12 +50,23 @@ describe('the verdicts on the demo', () => {
     },
   );
 
-  it.each(single)(
+  it.each(truths)(
     '$className raises the cautions it should, and no other',
     ({ className, expectedCautions }) => {
       const raised = assessed(className).conclusion.cautions.map(({ code }) => code);
-      const known = expectedCautions.filter((code) => (cautionCodes as readonly string[]).includes(code));
-      expect(raised.sort()).toEqual(known.sort());
+      expect(raised.sort()).toEqual([...expectedCautions].sort());
+    },
+  );
+
+  it.each(truths.filter(({ expectedProposal }) => expectedProposal))(
+    '$className is advised to: $expectedProposal',
+    ({ className, expectedProposal }) => {
+      const { proposal } = assessed(className).conclusion;
+      if (expectedProposal === 'run-to-failure') {
+        expect(proposal).toMatchObject({ action: 'keep', from: { interval: null }, to: { interval: null } });
+      } else {
+        expect(proposal.action).toBe(expectedProposal);
+      }
     },
   );
 
