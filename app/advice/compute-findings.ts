@@ -1,4 +1,3 @@
-import { ageRankTest } from '~/reliability/age-rank';
 import { assetHistories } from '~/reliability/asset-histories';
 import { meanTimeInterval } from '~/reliability/exponential';
 import { failuresToSettle } from '~/reliability/failures-to-settle';
@@ -11,6 +10,7 @@ import { pooledExposure, pooledExposureClock, type PooledExposure } from '~/reli
 import type { Position } from '~/reliability/position';
 import { fitPowerLaw, type NoPowerLawFit, type PowerLawFit } from '~/reliability/power-law';
 import { silenceChance } from '~/reliability/silence';
+import { findAgeRank } from './age-rank-findings';
 import { alarmFindings } from './advance-alarm-state';
 import type { AlarmState } from './alarm-findings';
 import type { ClassEvidence } from './class-evidence';
@@ -164,18 +164,8 @@ function lifeFindings(life: LifeHistories): Findings['life'] {
 }
 
 function ageRank(positions: readonly Position[]): Findings['ageRank'] {
-  const test = ageRankTest(positions);
-  const withPeers = test.marks.filter(({ size }) => size > 1);
-  const youngerPeers = withPeers.map(({ share, size }) => (share * size - 0.5) / (size - 1));
-  return {
-    marks: test.marks.map(({ share, size, at }) => ({ share, peers: size, at })),
-    meanShare: test.meanShare,
-    meanYoungerPeers: withPeers.length === 0 ? null : mean(youngerPeers),
-    z: test.z,
-    p: test.pTwoSided,
-    weightless: test.weightless,
-    ageUnknown: test.unknownAge,
-  };
+  const { findings, marks } = findAgeRank(positions);
+  return { ...findings, marks: marks.map(({ share, size, at }) => ({ share, peers: size, at })) };
 }
 
 function scatterFindings(
@@ -238,8 +228,4 @@ function countPlannedRenewals(positions: readonly Position[]): number {
   const within = ({ events, watchFrom, watchTo }: Position) =>
     events.filter(({ at, kind }) => kind === 'planned-renewal' && at >= watchFrom && at <= watchTo);
   return positions.reduce((sum, position) => sum + within(position).length, 0);
-}
-
-function mean(values: readonly number[]): number {
-  return values.reduce((sum, value) => sum + value, 0) / values.length;
 }

@@ -1,7 +1,7 @@
-import { ageRankTest } from '~/reliability/age-rank';
 import { lifeHistories } from '~/reliability/life-histories';
 import type { Position } from '~/reliability/position';
 import { isFailureOf, isWatched, watchedEvents } from '~/reliability/watched-events';
+import { findAgeRank } from './age-rank-findings';
 import type { ClassEvidence } from './class-evidence';
 import { estimateLife } from './life-estimates';
 import type { ModeFindings, ModesFindings } from './mode-findings';
@@ -40,22 +40,11 @@ function findMode(
   { id, name, failures }: { id: string; name: string; failures: number },
 ): ModeFindings {
   const { histories } = lifeHistories(positions, { mode: id });
-  const test = ageRankTest(positions, { mode: id });
-  const amongPeers = test.marks.filter(({ size }) => size > 1);
-  const younger = amongPeers.reduce((sum, { share, size }) => sum + (share * size - 0.5) / (size - 1), 0);
   return {
     modeId: id,
     name,
     failures,
     life: estimateLife(histories),
-    ageRank: {
-      failures: test.marks.length,
-      meanShare: test.meanShare,
-      meanYoungerPeers: amongPeers.length === 0 ? null : younger / amongPeers.length,
-      z: test.z,
-      p: test.pTwoSided,
-      weightless: test.weightless,
-      ageUnknown: test.unknownAge,
-    },
+    ageRank: findAgeRank(positions, { mode: id }).findings,
   };
 }

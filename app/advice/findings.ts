@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { ageRankFindingsSchema } from './age-rank-findings';
 import { alarmFindingsSchema } from './alarm-findings';
 import { leftOutReasons } from './class-evidence';
 import { forecastFindingsSchema } from './forecast-findings';
@@ -77,16 +78,9 @@ export const findingsSchema = z.object({
     longestAge: z.number(),
     failuresToSettle: z.object({ total: z.number().int(), more: z.number().int() }).nullable(),
   }),
-  ageRank: z.object({
+  ageRank: ageRankFindingsSchema.extend({
     /** One mark a failure, in order of time: rank share, peers under watch, moment. */
     marks: z.array(z.object({ share: z.number(), peers: z.number().int(), at: z.number() })),
-    meanShare: z.number().nullable(),
-    /** The share of the others that were younger, on average; what "older than 78 % of the others" says. */
-    meanYoungerPeers: z.number().nullable(),
-    z: z.number().nullable(),
-    p: z.number().nullable(),
-    weightless: z.number().int(),
-    ageUnknown: z.number().int(),
   }),
   renewals: z.object({
     /** The age by which three planned renewals in four have happened; null without any. */

@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { ageRankFindingsSchema } from './age-rank-findings';
 import { lifeEstimatesSchema } from './life-estimates';
 
 /** One failure mode of a class, with the other modes as censoring. */
@@ -8,18 +9,7 @@ const modeFindingsSchema = z.object({
   /** On record under watch, whether the item's age was known or not; `life.fit.failures` counts the known. */
   failures: z.number().int(),
   life: lifeEstimatesSchema,
-  ageRank: z.object({
-    /** Failures with a known age among their peers. */
-    failures: z.number().int(),
-    meanShare: z.number().nullable(),
-    /** The share of the others that were younger, on average. */
-    meanYoungerPeers: z.number().nullable(),
-    z: z.number().nullable(),
-    p: z.number().nullable(),
-    /** Failures at which all ages were equal, and failures of an item of unknown age. */
-    weightless: z.number().int(),
-    ageUnknown: z.number().int(),
-  }),
+  ageRank: ageRankFindingsSchema,
 });
 export type ModeFindings = z.infer<typeof modeFindingsSchema>;
 

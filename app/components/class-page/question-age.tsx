@@ -7,7 +7,7 @@ import { AgeRankStrip } from '~/charts/age-rank-strip';
 import { HazardByAgeChart } from '~/charts/hazard-by-age-chart';
 import { Estimate } from '../estimate';
 import { FigureList } from '../figure-list';
-import { formatClock, formatFixed, formatP, formatTrimmed } from '~/format/number';
+import { formatClock, formatFixed, formatNoun, formatP, formatPercent, formatTrimmed } from '~/format/number';
 import { QuestionSection } from '../question-section';
 import { VERDICT_COLOUR } from '../verdict';
 import { ShapeEstimate } from './shape-estimate';
@@ -76,6 +76,7 @@ export function QuestionAge(props: QuestionAgeProps) {
         meanShare={ageRank.meanShare ?? 0.5}
         verdict={conclusion.verdict}
         weightlessCount={ageRank.weightless}
+        sentence={stripSentence(ageRank)}
       />
       <HazardByAgeChart
         {...figures}
@@ -85,6 +86,16 @@ export function QuestionAge(props: QuestionAgeProps) {
       />
     </QuestionSection>
   );
+}
+
+/** Where the marks lie on average; the sentence of the page counts the others only, the strip the item itself too. */
+function stripSentence({ marks, meanShare, weightless }: QuestionAgeProps['ageRank']): string | undefined {
+  if (meanShare === null) return undefined;
+  const saysNothing =
+    weightless === 0
+      ? ''
+      : ` ${formatNoun(weightless, 'failure')} while all were of one age say nothing here.`;
+  return `${formatNoun(marks.length, 'failure')}; on average the failed one stood ${formatPercent(meanShare)} of the way from the youngest to the oldest. If age did not matter that would be 50\u202f%.${saysNothing}`;
 }
 
 function LifeLength({ life, unit }: { life: LifeEstimate; unit: 'days' | 'hours' }) {
