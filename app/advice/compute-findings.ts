@@ -1,19 +1,24 @@
 import { assetHistories } from '~/reliability/asset-histories';
 import { meanTimeInterval } from '~/reliability/exponential';
+import { crowAmsaaSlope } from '~/reliability/crow-amsaa';
 import { failuresToSettle } from '~/reliability/failures-to-settle';
 import type { History } from '~/reliability/history';
 import { laplaceTest } from '~/reliability/laplace';
 import { lifeHistories, type LifeHistories } from '~/reliability/life-histories';
+import { meanCumulativeFunction } from '~/reliability/mean-cumulative-function';
 import { militaryHandbookTest } from '~/reliability/military-handbook';
+import { nelsonAalen } from '~/reliability/nelson-aalen';
 import { piecewiseHazard } from '~/reliability/piecewise-hazard';
 import { pooledExposure, pooledExposureClock, type PooledExposure } from '~/reliability/pooled-exposure';
 import type { Position } from '~/reliability/position';
 import { fitPowerLaw, type NoPowerLawFit, type PowerLawFit } from '~/reliability/power-law';
 import { silenceChance } from '~/reliability/silence';
+import type { CountInExposure } from '~/reliability/two-rates';
 import { findAgeRank } from './age-rank-findings';
 import { alarmFindings } from './advance-alarm-state';
 import type { AlarmState } from './alarm-findings';
 import type { ClassEvidence } from './class-evidence';
+import { comparePeriods } from './compare-periods';
 import { findModes } from './find-modes';
 import { findScatter } from './find-scatter';
 import type { FailureRate, Findings } from './findings';
@@ -26,6 +31,8 @@ import { priceSchedule } from './price-schedule';
 import { toShapeFit } from './shape-fit';
 
 const daysAYear = 365;
+/** Of every two-sided interval shown. */
+const confidence = 0.9;
 
 /**
  * Estimates everything that an assessment of one class rests on. Pure: the same evidence gives the same
@@ -45,13 +52,11 @@ export function computeFindings(evidence: ClassEvidence, alarmState: AlarmState)
   const slope = fitPowerLaw(asset.histories);
   const lifeFit = fitPowerLaw(life.histories);
   const yearAgo = now - daysAYear;
-  const rate = {
-    overall: failureRate(pooled.failures.length, pooled.totalExposure),
-    lastYear: failureRate(
-      pooled.failures.filter(({ at }) => at >= yearAgo).length,
-      pooled.totalExposure - Math.min(exposureClock(yearAgo), pooled.totalExposure),
-    ),
-  };
+  const exposureBefore = Math.min(exposureClock(yearAgo), pooled.totalExposure);
+  const rate = rateFindings(
+    { failures: pooled.failures.filter(({ at }) => at < yearAgo).length, exposure: exposureBefore },
+    { failures: pooled.failures.length, exposure: pooled.totalExposure },
+  );
   const extent = extentOf(evidence, everyPosition, life);
   const renewals = renewalHabits(life);
 
@@ -128,6 +133,24 @@ function extentOf(
   };
 }
 
+function rateFindings(before: CountInExposure, overall: CountInExposure): Findings['rate'] {
+  const lastYear = {
+    failures: overall.failures - before.failures,
+    exposure: overall.exposure - before.exposure,
+  };
+  const comparison = comparePeriods(before, lastYear);
+  return {
+    overall: failureRate(overall.failures, overall.exposure),
+    lastYear: failureRate(lastYear.failures, lastYear.exposure),
+    lastYearAgainstBefore: comparison && {
+      ratio: comparison.ratio,
+      low: comparison.low,
+      high: comparison.high,
+      p: comparison.p,
+    },
+  };
+}
+
 function trendFindings(
   histories: readonly History[],
   slope: PowerLawFit | NoPowerLawFit,
@@ -135,6 +158,8 @@ function trendFindings(
 ): Findings['trend'] {
   const laplace = laplaceTest(histories);
   const military = militaryHandbookTest(histories);
+  const exactSlope = crowAmsaaSlope(histories);
+  const perPosition = meanCumulativeFunction(histories, confidence).at(-1);
   const failureExposures = pooled.failures.map(({ exposure }) => exposure);
   return {
     laplace: laplace && { u: laplace.u, p: laplace.pTwoSided, failures: laplace.failures },
@@ -144,6 +169,11 @@ function trendFindings(
       p: military.pTwoSided,
     },
     slope: toShapeFit(slope, 'on record'),
+    exactSlopeInterval: exactSlope && { ...exactSlope.interval },
+    failuresPerPosition:
+      perPosition === undefined
+        ? null
+        : { age: perPosition.time, value: perPosition.mean, low: perPosition.lower, high: perPosition.upper },
     failureExposures,
     totalExposure: pooled.totalExposure,
     silence: silence(failureExposures, pooled.totalExposure),
@@ -155,8 +185,13 @@ function lifeFindings(life: LifeHistories): Findings['life'] {
   const { fit } = estimates;
   const { bands, longestAge } = piecewiseHazard(life.histories);
   const settle = failuresToSettle(fit.failures, fit.kind === 'fit' ? fit.lnShapeStandardError : null);
+  const hazard = nelsonAalen(life.histories, confidence).at(-1);
   return {
     ...estimates,
+    cumulativeHazard:
+      hazard === undefined
+        ? null
+        : { age: hazard.age, value: hazard.cumulativeHazard, low: hazard.low, high: hazard.high },
     hazardBands: bands.map((band) => ({ ...band })),
     longestAge,
     failuresToSettle: life.histories.length === 0 ? null : { total: settle.total, more: settle.more },

@@ -36,6 +36,9 @@ const hazardBand = z.object({
   high: z.number(),
 });
 
+/** A curve that adds up, at the last point it reaches, with its 90 % band. */
+const lastPoint = z.object({ age: z.number(), value: z.number(), low: z.number(), high: z.number() });
+
 export const findingsSchema = z.object({
   clock: z.enum(['calendar-days', 'operating-hours']),
   extent: z.object({
@@ -59,13 +62,24 @@ export const findingsSchema = z.object({
     zeroLives: z.number().int(),
   }),
   leftOut: z.array(z.object({ reason: z.enum(leftOutReasons), count: z.number().int() })),
-  rate: z.object({ overall: failureRate, lastYear: failureRate }),
+  rate: z.object({
+    overall: failureRate,
+    lastYear: failureRate,
+    /** The last year's rate over the rate before, with the exact 90 % interval; null where one has no running time. */
+    lastYearAgainstBefore: z
+      .object({ ratio: z.number().nullable(), low: z.number(), high: z.number().nullable(), p: z.number() })
+      .nullable(),
+  }),
   trend: z.object({
     laplace: z.object({ u: z.number(), p: z.number(), failures: z.number().int() }).nullable(),
     militaryHandbook: z
       .object({ statistic: z.number(), degreesOfFreedom: z.number().int(), p: z.number() })
       .nullable(),
     slope: shapeFitSchema,
+    /** Exact interval of the slope, where all positions are watched from age 0 to one and the same age. */
+    exactSlopeInterval: z.object({ low: z.number(), high: z.number() }).nullable(),
+    /** Mean number of failures a position has had by an age: the mean cumulative function. */
+    failuresPerPosition: lastPoint.nullable(),
     /** Where on the pooled exposure clock each failure stands, ascending. */
     failureExposures: z.array(z.number()),
     totalExposure: z.number(),
@@ -74,6 +88,8 @@ export const findingsSchema = z.object({
   }),
   life: z.object({
     ...lifeEstimatesSchema.shape,
+    /** Nelson–Aalen. */
+    cumulativeHazard: lastPoint.nullable(),
     hazardBands: z.array(hazardBand),
     longestAge: z.number(),
     failuresToSettle: z.object({ total: z.number().int(), more: z.number().int() }).nullable(),

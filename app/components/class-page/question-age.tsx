@@ -30,7 +30,7 @@ interface QuestionAgeProps {
 /** Question 2: do the old ones go first? */
 export function QuestionAge(props: QuestionAgeProps) {
   const { conclusion, findings, ageRank, figures, itemSingular } = props;
-  const { fit, meanLife, tenthGone, memorylessTest } = findings.life;
+  const { fit, meanLife, tenthGone, memorylessTest, cumulativeHazard } = findings.life;
   const unit = clockUnit(findings.clock);
   const { short, sentence } = conclusion.answers.age;
   const inClock = (value: number | null) => (value === null ? 'not known' : formatClock(value, unit));
@@ -52,6 +52,21 @@ export function QuestionAge(props: QuestionAgeProps) {
               { name: 'Characteristic life', value: inClock(fit.kind === 'fit' ? fit.scale : null) },
               { name: 'Mean life (MTTF)', value: <LifeLength life={meanLife} unit={unit} /> },
               { name: 'One in ten gone by (B10)', value: <LifeLength life={tenthGone} unit={unit} /> },
+              ...(cumulativeHazard === null
+                ? []
+                : [
+                    {
+                      name: `Cumulative hazard by ${inClock(cumulativeHazard.age)}`,
+                      value: (
+                        <Estimate
+                          value={cumulativeHazard.value}
+                          low={cumulativeHazard.low}
+                          high={cumulativeHazard.high}
+                          format={(value) => formatFixed(value, 2)}
+                        />
+                      ),
+                    },
+                  ]),
               {
                 name: 'Against a constant rate',
                 value:

@@ -18,8 +18,8 @@ interface QuestionTrendProps {
 
 /** Question 1: does the class fail more often than it used to? */
 export function QuestionTrend({ conclusion, findings, figures, itemSingular }: QuestionTrendProps) {
-  const { laplace, militaryHandbook, slope } = findings.trend;
-  const { overall, lastYear } = findings.rate;
+  const { laplace, militaryHandbook, slope, exactSlopeInterval, failuresPerPosition } = findings.trend;
+  const { overall, lastYear, lastYearAgainstBefore } = findings.rate;
   const unit = clockUnit(findings.clock);
   const { short, sentence } = conclusion.answers.trend;
   const inClock = (value: number) => formatClock(value, unit);
@@ -46,6 +46,14 @@ export function QuestionTrend({ conclusion, findings, figures, itemSingular }: Q
                     : `${formatFixed(militaryHandbook.statistic, 2)} on ${formatCount(militaryHandbook.degreesOfFreedom)} df, ${formatP(militaryHandbook.p)}`,
               },
               { name: 'Slope', value: <ShapeEstimate fit={slope} /> },
+              ...(exactSlopeInterval === null
+                ? []
+                : [
+                    {
+                      name: 'Exact interval',
+                      value: `${formatFixed(exactSlopeInterval.low, 2)} to ${formatFixed(exactSlopeInterval.high, 2)}`,
+                    },
+                  ]),
               {
                 name: 'One failure in',
                 value: (
@@ -74,6 +82,39 @@ export function QuestionTrend({ conclusion, findings, figures, itemSingular }: Q
                   />
                 ),
               },
+              ...(lastYearAgainstBefore === null
+                ? []
+                : [
+                    {
+                      name: 'Last year over before',
+                      value: (
+                        <>
+                          <Estimate
+                            value={lastYearAgainstBefore.ratio}
+                            low={lastYearAgainstBefore.low}
+                            high={lastYearAgainstBefore.high}
+                            format={(value) => formatFixed(value, 2)}
+                          />
+                          , {formatP(lastYearAgainstBefore.p)}
+                        </>
+                      ),
+                    },
+                  ]),
+              ...(failuresPerPosition === null
+                ? []
+                : [
+                    {
+                      name: `Failures of one place by ${inClock(failuresPerPosition.age)}`,
+                      value: (
+                        <Estimate
+                          value={failuresPerPosition.value}
+                          low={failuresPerPosition.low}
+                          high={failuresPerPosition.high}
+                          format={(value) => formatFixed(value, 2)}
+                        />
+                      ),
+                    },
+                  ]),
             ]}
           />
         </>
