@@ -54,6 +54,7 @@ export async function up(knex: Knex): Promise<void> {
       )
     );
     create index failures_class_time on failures (class_id, asset_id, failed_on, logged_at, id);
+    create index failures_mode on failures (mode_id);
     create index failures_asset_time on failures (asset_id, failed_on desc);
     create index failures_logged_by on failures (logged_by, logged_at desc);
     create index failures_import on failures (import_id) where import_id is not null;

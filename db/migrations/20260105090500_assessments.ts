@@ -25,6 +25,7 @@ export async function up(knex: Knex): Promise<void> {
       reason text not null,
       primary key (run_id, class_id)
     );
+    create index job_run_problems_class on job_run_problems (class_id);
 
     create table assessments (
       id uuid primary key default gen_random_uuid(),
