@@ -1,9 +1,10 @@
 import { formatCount, formatNoun } from '~/format/number';
 import type { AlarmKind } from './alarm-findings';
+import { capitalised } from './capitalised';
 
 /** What an alarm claims, as a title: without a full stop. */
 export function alarmTitle(kind: AlarmKind, itemPlural: string): string {
-  const items = itemPlural.charAt(0).toUpperCase() + itemPlural.slice(1);
+  const items = capitalised(itemPlural);
   switch (kind) {
     case 'rate-rising':
       return `${items} fail more often than they used to`;
@@ -33,8 +34,15 @@ export function alarmEvidence({ logE, failures }: { logE: number; failures: numb
   return `${behind} Looked at every night for ever, a class where nothing of the kind goes on gets this far with a chance of ${chance}; an alarm needs 1 in 20 or less.`;
 }
 
-/** What to do about it. */
-export function alarmAction(kind: AlarmKind): string {
+/**
+ * What to do about it.
+ *
+ * @param isMarked whether law or the safety of people decides on the class: then nothing here does.
+ */
+export function alarmAction(kind: AlarmKind, isMarked: boolean): string {
+  if (isMarked) {
+    return 'Take it to the responsible licensed person. The local code decides on intervals and methods; make a failed item safe first.';
+  }
   switch (kind) {
     case 'rate-rising':
       return 'Find out what has changed: what the items sit in, their use, water, voltage, a supplier, or how failures are logged.';

@@ -11,6 +11,8 @@ export interface Alarm {
   classId: string;
   className: string;
   itemPlural: string;
+  /** Whether the class is statutory or endangers people. */
+  isMarked: boolean;
   kind: AlarmKind;
   raisedAsOf: string;
   raisedAt: Date;
@@ -131,7 +133,7 @@ export async function listAlarms(
     .join('asset_classes', 'asset_classes.id', 'alarms.class_id')
     .leftJoin('people', 'people.id', 'alarms.cleared_by')
     .orderByRaw('alarms.cleared_at is not null, alarms.raised_as_of desc, asset_classes.name, alarms.kind')
-    .select<Alarm[]>({
+    .select({
       id: 'alarms.id',
       classId: 'alarms.class_id',
       className: 'asset_classes.name',
@@ -145,7 +147,8 @@ export async function listAlarms(
       clearedAt: 'alarms.cleared_at',
       clearedByName: 'people.name',
       clearReason: 'alarms.clear_reason',
-    });
+    })
+    .select<Alarm[]>(db.raw('asset_classes.statutory or asset_classes.endangers_people as "isMarked"'));
   if (classId !== undefined) query.where('alarms.class_id', classId);
   if (open === true) query.whereNull('alarms.cleared_at');
   if (open === false) query.whereNotNull('alarms.cleared_at');

@@ -15,6 +15,8 @@ export const longestClearReason = 1000;
 export interface AlarmShown {
   id: string;
   kind: AlarmKind;
+  /** Whether the class is statutory or endangers people. */
+  isMarked: boolean;
   raisedAsOf: string;
   logE: number;
   failures: number;
@@ -73,14 +75,14 @@ export function AlarmNotices({ alarms, itemPlural, mayClear, timeZone }: AlarmNo
 export function AlarmWords({
   alarm,
 }: {
-  alarm: Pick<AlarmShown, 'kind' | 'raisedAsOf' | 'logE' | 'failures'>;
+  alarm: Pick<AlarmShown, 'kind' | 'isMarked' | 'raisedAsOf' | 'logE' | 'failures'>;
 }) {
   return (
     <>
       <p>
         Raised for {formatCalendarDate(alarm.raisedAsOf)}. {alarmEvidence(alarm)}
       </p>
-      <p>{alarmAction(alarm.kind)}</p>
+      <p>{alarmAction(alarm.kind, alarm.isMarked)}</p>
     </>
   );
 }

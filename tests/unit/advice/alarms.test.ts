@@ -1,3 +1,4 @@
+import { alarmAction } from '~/advice/alarm-words';
 import { describe, expect, it } from 'vitest';
 import { advanceAlarmState, alarmFindings } from '~/advice/advance-alarm-state';
 import { alarmFindingsSchema, alarmKinds, alarmStateSchema, type AlarmState } from '~/advice/alarm-findings';
@@ -247,4 +248,13 @@ it('says in words how strong the evidence is', () => {
     /^1 failure is behind it\. .*at most 1 in 20;/,
   );
   expect(alarmEvidence({ logE: 5000, failures: 9 })).toContain('under 1 in 1\u202f000\u202f000;');
+});
+
+describe('what an alarm asks for', () => {
+  it('defers to the licensed person where law or people are concerned, whatever the alarm', () => {
+    for (const kind of alarmKinds) {
+      expect(alarmAction(kind, true)).toMatch(/licensed person.*local code/);
+      expect(alarmAction(kind, false)).not.toMatch(/licensed/);
+    }
+  });
 });
