@@ -1,51 +1,11 @@
 import { describe, expect, it } from 'vitest';
-import { advanceAlarmState } from '~/advice/advance-alarm-state';
-import type { ClassEvidence } from '~/advice/class-evidence';
-import { computeFindings } from '~/advice/compute-findings';
-import { conclude, decideRun, runTestsOf } from '~/advice/conclude';
+import { decideRun } from '~/advice/conclude';
 import type { Conclusion } from '~/advice/conclusion';
-import { findingsSchema } from '~/advice/findings';
-import type { Position } from '~/reliability/position';
 import { dutyUsage } from '~/reliability/usage';
+import { anEvidence, assessAlone } from '../../support/class-evidence';
 import { aPosition, anEvent } from '../../support/position';
 import { seededRandom } from '../../support/seeded-random';
 import { simulateClass, usualClass } from '../../support/simulate-class';
-
-const seal = { itemSingular: 'seal', itemPlural: 'seals', statutory: false, endangersPeople: false };
-
-function evidence(positions: readonly Position[], differences: Partial<ClassEvidence> = {}): ClassEvidence {
-  return {
-    ...seal,
-    clock: 'calendar-days',
-    now: positions.reduce((latest, { watchTo }) => Math.max(latest, watchTo), 0),
-    positions,
-    rateOnlyPositions: [],
-    positionsWithAssumedClock: 0,
-    hiddenFailures: false,
-    costs: { plannedMinor: null, failureMinor: null, groupPlannedMinor: null },
-    sparesLeadTimeDays: null,
-    serviceLevel: 0.95,
-    requiredAvailability: null,
-    currentTask: null,
-    clockUnitsAYear: 365.25,
-    places: new Map(
-      positions.map(({ id }) => [id, { tag: id, siteId: 'site-1', siteName: 'Saltmarsh Depot' }]),
-    ),
-    visits: new Map(),
-    groups: { assets: 0, items: 0, itemsOfUnknownAge: 0, failures: 0, undatedFailures: 0 },
-    modes: [],
-    leftOut: [],
-    ...differences,
-  };
-}
-
-function assess(input: ClassEvidence): Conclusion {
-  const findings = findingsSchema.parse(
-    JSON.parse(JSON.stringify(computeFindings(input, advanceAlarmState(null, input.positions)))),
-  );
-  const [decisions] = decideRun([runTestsOf(findings)]);
-  return conclude(findings, { marks: input, currency: 'GBP' }, decisions!);
-}
 
 const codes = ({ cautions }: Conclusion) => cautions.map(({ code }) => code);
 const cautionOf = (conclusion: Conclusion, code: string) =>
@@ -56,7 +16,7 @@ const steady = simulateClass(seededRandom(11), { ...usualClass, shape: 1, scale:
 
 describe('assessment of a class', () => {
   it('says in words that wearing items wear out, and how much older the failed ones were', () => {
-    const conclusion = assess(evidence(wearing));
+    const conclusion = assessAlone(anEvidence(wearing));
     expect(conclusion.verdict).toBe('wear-out');
     expect(conclusion.headline.claim).toBe('Seals wear out.');
     expect(conclusion.headline.support).toMatch(
@@ -66,14 +26,14 @@ describe('assessment of a class', () => {
   });
 
   it('says that memoryless items fail at a constant rate', () => {
-    const conclusion = assess(evidence(steady));
+    const conclusion = assessAlone(anEvidence(steady));
     expect(conclusion.verdict).toBe('memoryless');
     expect(conclusion.headline.claim).toBe('Seals fail at a constant rate, whatever their age.');
     expect(conclusion.answers.age.short).toBe('No.');
   });
 
   it('gives an item without a single failure a bound instead of a rate', () => {
-    const conclusion = assess(evidence([aPosition()]));
+    const conclusion = assessAlone(anEvidence([aPosition()]));
     expect(conclusion.verdict).toBe('undecided');
     expect(conclusion.headline.support).toContain(
       'No failure in 1\u202f000 days of running time of all seals together.',
@@ -86,13 +46,13 @@ describe('assessment of a class', () => {
   });
 
   it('does without any position', () => {
-    const conclusion = assess(evidence([], { now: 100 }));
+    const conclusion = assessAlone(anEvidence([], { now: 100 }));
     expect(conclusion.verdict).toBe('undecided');
     expect(conclusion.headline.support).toBe('No seal has been watched for a full day yet.');
   });
 
   it('says how many more failures would settle an undecided verdict', () => {
-    const conclusion = assess(evidence([aPosition({ events: [anEvent(300), anEvent(700)] })]));
+    const conclusion = assessAlone(anEvidence([aPosition({ events: [anEvent(300), anEvent(700)] })]));
     expect(conclusion.answers.age.sentence).toMatch(/About \d+ more failures would settle it\./);
   });
 
@@ -100,7 +60,7 @@ describe('assessment of a class', () => {
     const positions = Array.from({ length: 6 }, (_, index) =>
       aPosition({ id: `p${index}`, events: [anEvent(1000)] }),
     );
-    const conclusion = assess(evidence(positions));
+    const conclusion = assessAlone(anEvidence(positions));
     expect(conclusion.verdict).toBe('undecided');
     expect(conclusion.answers.age.sentence).toContain(
       'All 6 failures of known age came at the longest age reached',
@@ -112,7 +72,7 @@ describe('assessment of a class', () => {
       ...position,
       usage: { at: (day: number) => day * 1000 },
     }));
-    const conclusion = assess(evidence(positions, { clock: 'operating-hours' }));
+    const conclusion = assessAlone(anEvidence(positions, { clock: 'operating-hours' }));
     expect(conclusion.verdict).toBe('wear-out');
   });
 });
@@ -120,8 +80,10 @@ describe('assessment of a class', () => {
 describe('cautions', () => {
   it('warns that few failures are behind a verdict below 10 and not from 10 on', () => {
     const failing = (n: number) =>
-      assess(
-        evidence([aPosition({ events: Array.from({ length: n }, (_, i) => anEvent(90 * (i + 1) + i * i)) })]),
+      assessAlone(
+        anEvidence([
+          aPosition({ events: Array.from({ length: n }, (_, i) => anEvent(90 * (i + 1) + i * i)) }),
+        ]),
       );
     expect(codes(failing(9))).toContain('few-failures');
     expect(codes(failing(10))).not.toContain('few-failures');
@@ -130,40 +92,44 @@ describe('cautions', () => {
 
   it('says that a schedule masks what older items would do, and not when half the lives run on', () => {
     const kept = simulateClass(seededRandom(3), { ...usualClass, shape: 1, renewalAgeDays: 200 });
-    const conclusion = assess(evidence(kept));
+    const conclusion = assessAlone(anEvidence(kept));
     expect(cautionOf(conclusion, 'masked-by-schedule')?.sentence).toContain('Masked beyond 200 days');
     if (conclusion.verdict === 'memoryless') {
       expect(conclusion.headline.claim).toBe(
         'Seals fail at a constant rate up to 200 days, whatever their age.',
       );
     }
-    expect(codes(assess(evidence(steady)))).not.toContain('masked-by-schedule');
+    expect(codes(assessAlone(anEvidence(steady)))).not.toContain('masked-by-schedule');
   });
 
   it('counts the positions whose item has no known fitting date', () => {
     const known = Array.from({ length: 6 }, (_, i) => aPosition({ id: `k${i}` }));
     const unknown = Array.from({ length: 2 }, (_, i) => aPosition({ id: `u${i}`, inServiceAt: -500 }));
-    const caution = cautionOf(assess(evidence([...known, ...unknown])), 'ages-unknown');
+    const caution = cautionOf(assessAlone(anEvidence([...known, ...unknown])), 'ages-unknown');
     expect(caution?.sentence).toContain('2 of 8 positions (25\u202f%)');
-    expect(codes(assess(evidence(known)))).not.toContain('ages-unknown');
+    expect(codes(assessAlone(anEvidence(known)))).not.toContain('ages-unknown');
   });
 
   it('says when operating hours are assumed', () => {
     const positions = steady.map((position) => ({ ...position, usage: dutyUsage(10) }));
-    const assumed = assess(
-      evidence(positions, { clock: 'operating-hours', positionsWithAssumedClock: positions.length }),
+    const assumed = assessAlone(
+      anEvidence(positions, { clock: 'operating-hours', positionsWithAssumedClock: positions.length }),
     );
     expect(cautionOf(assumed, 'clock-assumed')?.sentence).toContain('all 30 positions');
   });
 
   it('notices that logging may have stopped', () => {
     const busy = Array.from({ length: 12 }, (_, i) => anEvent(20 * (i + 1)));
-    expect(codes(assess(evidence([aPosition({ watchTo: 260, events: busy })])))).not.toContain('logging-gap');
-    expect(codes(assess(evidence([aPosition({ watchTo: 600, events: busy })])))).toContain('logging-gap');
+    expect(codes(assessAlone(anEvidence([aPosition({ watchTo: 260, events: busy })])))).not.toContain(
+      'logging-gap',
+    );
+    expect(codes(assessAlone(anEvidence([aPosition({ watchTo: 600, events: busy })])))).toContain(
+      'logging-gap',
+    );
   });
 
   it('always stands before the advice where law or people are concerned, worst first', () => {
-    const conclusion = assess(evidence(wearing, { statutory: true, endangersPeople: true }));
+    const conclusion = assessAlone(anEvidence(wearing, { statutory: true, endangersPeople: true }));
     expect(codes(conclusion).slice(0, 2)).toEqual(['endangers-people', 'statutory']);
     expect(cautionOf(conclusion, 'statutory')?.action).toMatch(/local code/);
     expect(cautionOf(conclusion, 'endangers-people')?.action).toMatch(/licensed practitioner/);
