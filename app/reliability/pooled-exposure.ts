@@ -91,7 +91,8 @@ export function pooledExposure(
     let end = start;
     while (end < raw.length && raw[end]!.at === at) end += 1;
     const resolution = 2 * raw[start]!.position.halfResolutionDays;
-    const atEnd = clock(at) > 0 ? clock(at) : clock(at + resolution / 2);
+    // Never before a failure that was itself put later for want of exposure.
+    const atEnd = Math.max(lastExposure, clock(at) > 0 ? clock(at) : clock(at + resolution / 2));
     const atStart = Math.max(lastExposure, clock(at - resolution));
     for (let index = start; index < end; index += 1) {
       const share = (index - start + 1) / (end - start);

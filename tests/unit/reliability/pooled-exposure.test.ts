@@ -55,4 +55,14 @@ describe('pooled exposure', () => {
     const { failures } = pooledExposure([aPosition({ events: [anEvent(0), anEvent(0)] })]);
     expect(failures.map(({ exposure }) => exposure)).toEqual([0.25, 0.5]);
   });
+
+  it('keeps failures in order when the first came before any exposure', () => {
+    const positions = [
+      aPosition({ id: 'a', events: [anEvent(0)] }),
+      aPosition({ id: 'b', events: [anEvent(10 / 1440)] }),
+    ];
+    const exposures = pooledExposure(positions).failures.map(({ exposure }) => exposure);
+    expect(exposures[0]).toBeGreaterThan(0);
+    expect(exposures[1]).toBeGreaterThanOrEqual(exposures[0]!);
+  });
 });
