@@ -13,6 +13,8 @@ export default [
     route('alarms/:alarmId/clear', 'routes/alarm-clear.tsx'),
     route('log', 'routes/log-find-asset.tsx'),
     route('log/:assetId', 'routes/log-failure.tsx'),
+    route('log/:assetId/reading', 'routes/log-reading.tsx'),
+    route('assets/:assetId/fitted', 'routes/asset-fitted.tsx'),
     route('failures/:failureId', 'routes/failure.tsx'),
     route('imports', 'routes/imports.tsx'),
     route('imports/new', 'routes/import-upload.tsx'),

@@ -18,6 +18,11 @@ export interface ClassSettings {
   readonly hiddenFailures: boolean;
   readonly plannedCostMinor: number | null;
   readonly failureCostMinor: number | null;
+  /** A planned replacement where all items of an asset are done in one visit: one item's part. */
+  readonly groupPlannedCostMinor: number | null;
+  readonly sparesLeadTimeDays: number | null;
+  /** Share of the time a hidden function is to be there, within (0, 1); only with hidden failures. */
+  readonly requiredAvailability: number | null;
 }
 
 export interface AssetClass extends ClassSettings {
@@ -52,6 +57,9 @@ const columns = {
   hiddenFailures: 'hidden_failures',
   plannedCostMinor: 'planned_cost_minor',
   failureCostMinor: 'failure_cost_minor',
+  groupPlannedCostMinor: 'group_planned_cost_minor',
+  sparesLeadTimeDays: 'spares_lead_time_days',
+  requiredAvailability: 'required_availability',
 } as const satisfies Record<keyof ClassSettings, string>;
 
 export const settingNames = Object.keys(columns) as (keyof ClassSettings)[];

@@ -19,6 +19,7 @@ export interface Asset extends AssetSummary {
   readonly classId: string;
   readonly siteId: string;
   readonly itemPlural: string;
+  readonly clock: 'calendar-days' | 'operating-hours';
   readonly inServiceOn: string;
   readonly watchedFrom: string;
   readonly watchedUntil: string | null;
@@ -75,6 +76,7 @@ export async function findAsset(db: Database, assetId: string): Promise<Asset | 
       classId: 'assets.class_id',
       siteId: 'assets.site_id',
       itemPlural: 'asset_classes.item_plural',
+      clock: 'asset_classes.clock',
       inServiceOn: 'assets.in_service_on',
       watchedFrom: 'assets.watched_from',
       watchedUntil: 'assets.watched_until',

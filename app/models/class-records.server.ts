@@ -84,114 +84,163 @@ export async function listClassIds(db: Database): Promise<string[]> {
   return rows.map(({ id }) => id);
 }
 
+interface ReadOptions {
+  /** Of the organisation: decides where in its day a moment lies. */
+  timeZone: string;
+  /** The day whose maintenance tasks are in force, 'YYYY-MM-DD'. */
+  asOf: string;
+}
+
 /**
  * Reads one class with all its records.
  *
- * @param timeZone of the organisation: decides where in its day a moment lies.
- * @param asOf the day whose maintenance tasks are in force.
  * @throws Error when there is no such class.
  */
 export async function readClassRecords(
   db: Database,
   classId: string,
-  { timeZone, asOf }: { timeZone: string; asOf: string },
+  options: ReadOptions,
 ): Promise<ClassRecords> {
-  const assetClass = await readClass(db, classId);
-  return {
-    assetClass,
-    assets: await readAssets(db, classId),
-    records: await readRecords(db, classId, timeZone),
-    readings: assetClass.clock === 'operating-hours' ? await readReadings(db, classId) : [],
-    fitted: await readFitted(db, classId),
-    modes: await readModes(db, classId),
-    renewalTask: await readRenewalTask(db, classId, asOf),
-  };
+  const [records] = await readRecordsOfClasses(db, [classId], options);
+  return records!;
 }
 
-async function readClass(db: Database, classId: string): Promise<ClassRow> {
+/**
+ * Reads some classes with all their records, one query a table for all of them. It holds all it reads in
+ * memory.
+ *
+ * @returns the classes in the order asked.
+ * @throws Error when there is no such class.
+ */
+export async function readRecordsOfClasses(
+  db: Database,
+  classIds: readonly string[],
+  { timeZone, asOf }: ReadOptions,
+): Promise<ClassRecords[]> {
+  const ids = [...classIds];
+  const classes = new Map((await readClasses(db, ids)).map((row) => [row.id, row]));
+  const assets = byClass(await readAssets(db, ids));
+  const records = byClass(await readRecords(db, ids, timeZone));
+  const onHours = ids.filter((id) => classes.get(id)?.clock === 'operating-hours');
+  const readings = byClass(onHours.length === 0 ? [] : await readReadings(db, onHours));
+  const fitted = byClass(await readFitted(db, ids));
+  const modes = byClass(await readModes(db, ids));
+  const tasks = byClass(await readRenewalTasks(db, ids, asOf));
+  return ids.map((id) => {
+    const assetClass = classes.get(id);
+    if (assetClass === undefined) throw new Error(`there is no asset class ${id}`);
+    return {
+      assetClass,
+      assets: assets.get(id) ?? [],
+      records: records.get(id) ?? [],
+      readings: readings.get(id) ?? [],
+      fitted: fitted.get(id) ?? [],
+      modes: modes.get(id) ?? [],
+      renewalTask: tasks.get(id)?.[0] ?? null,
+    };
+  });
+}
+
+type OfClass<Row> = Row & { classId: string };
+
+function byClass<Row>(rows: readonly OfClass<Row>[]): Map<string, Row[]> {
+  const groups = new Map<string, Row[]>();
+  for (const row of rows) {
+    const group = groups.get(row.classId);
+    if (group === undefined) groups.set(row.classId, [row]);
+    else group.push(row);
+  }
+  return groups;
+}
+
+async function readClasses(db: Database, classIds: string[]): Promise<ClassRow[]> {
   const { rows } = await db.raw<{ rows: ClassRow[] }>(
     `select id, item_singular as "itemSingular", item_plural as "itemPlural", clock,
             statutory, endangers_people as "endangersPeople", hidden_failures as "hiddenFailures",
             planned_cost_minor as "plannedCostMinor", failure_cost_minor as "failureCostMinor",
             group_planned_cost_minor as "groupPlannedCostMinor",
             spares_lead_time_days as "sparesLeadTimeDays", required_availability as "requiredAvailability"
-       from asset_classes where id = ?`,
-    [classId],
+       from asset_classes where id = any(?)`,
+    [classIds],
   );
-  if (rows[0] === undefined) throw new Error(`there is no asset class ${classId}`);
-  return rows[0];
+  return rows;
 }
 
-async function readAssets(db: Database, classId: string): Promise<AssetRow[]> {
-  const { rows } = await db.raw<{ rows: AssetRow[] }>(
-    `select a.id, a.tag, a.site_id as "siteId", s.name as "siteName", a.quantity, a.in_service_on as "inServiceOn",
+async function readAssets(db: Database, classIds: string[]): Promise<OfClass<AssetRow>[]> {
+  const { rows } = await db.raw<{ rows: OfClass<AssetRow>[] }>(
+    `select a.class_id as "classId", a.id, a.tag, a.site_id as "siteId", s.name as "siteName", a.quantity, a.in_service_on as "inServiceOn",
             a.watched_from as "watchedFrom", a.watched_until as "watchedUntil", a.retired_on as "retiredOn",
             a.item_fitted_on as "itemFittedOn", a.duty_hours_per_day as "dutyHoursPerDay"
-       from assets a join sites s on s.id = a.site_id where a.class_id = ? order by a.id`,
-    [classId],
+       from assets a join sites s on s.id = a.site_id where a.class_id = any(?) order by a.id`,
+    [classIds],
   );
   return rows;
 }
 
 /** In order of entry within a day, so that the same records always give the same positions. */
-async function readRecords(db: Database, classId: string, timeZone: string): Promise<RecordRow[]> {
+async function readRecords(
+  db: Database,
+  classIds: string[],
+  timeZone: string,
+): Promise<OfClass<RecordRow>[]> {
   const timeOfDay = (column: string) =>
     `extract(epoch from (${column} at time zone :timeZone)::time)::float8 / 86400`;
-  const { rows } = await db.raw<{ rows: RecordRow[] }>(
+  const { rows } = await db.raw<{ rows: OfClass<RecordRow>[] }>(
     `select * from (
-       select asset_id as "assetId", failed_on as "day", ${timeOfDay('failed_at')} as "timeOfDay",
+       select class_id as "classId", asset_id as "assetId", failed_on as "day", ${timeOfDay('failed_at')} as "timeOfDay",
               'failure' as "source", effect = 'renewed' as "renewed", mode_id as "modeId",
               outside_cause as "outsideCause", item_fitted_on as "itemFittedOn", item_age as "itemAge",
               null::integer as "items", voided_at is not null as "voided", logged_at, id
-         from failures where class_id = :classId
+         from failures where class_id = any(:classIds)
        union all
-       select asset_id, done_on, ${timeOfDay('done_at')}, 'planned-work', renewed, null,
+       select class_id, asset_id, done_on, ${timeOfDay('done_at')}, 'planned-work', renewed, null,
               null, item_fitted_on, null, items, voided_at is not null, logged_at, id
-         from planned_work where class_id = :classId
+         from planned_work where class_id = any(:classIds)
      ) records
      order by "assetId", "day", logged_at, id`,
-    { classId, timeZone },
+    { classIds, timeZone },
   );
   return rows;
 }
 
-async function readReadings(db: Database, classId: string): Promise<ReadingRow[]> {
-  const { rows } = await db.raw<{ rows: ReadingRow[] }>(
-    `select r.asset_id as "assetId", r.read_on as "day", r.hours, r.meter_changed as "meterChanged"
+async function readReadings(db: Database, classIds: string[]): Promise<OfClass<ReadingRow>[]> {
+  const { rows } = await db.raw<{ rows: OfClass<ReadingRow>[] }>(
+    `select a.class_id as "classId", r.asset_id as "assetId", r.read_on as "day", r.hours, r.meter_changed as "meterChanged"
        from meter_readings r join assets a on a.id = r.asset_id
-      where a.class_id = ? and r.voided_at is null order by r.asset_id, r.read_on`,
-    [classId],
+      where a.class_id = any(?) and r.voided_at is null order by r.asset_id, r.read_on`,
+    [classIds],
   );
   return rows;
 }
 
-async function readFitted(db: Database, classId: string): Promise<FittedRow[]> {
-  const { rows } = await db.raw<{ rows: FittedRow[] }>(
-    `select f.asset_id as "assetId", f.fitted_on as "fittedOn", f.count
+async function readFitted(db: Database, classIds: string[]): Promise<OfClass<FittedRow>[]> {
+  const { rows } = await db.raw<{ rows: OfClass<FittedRow>[] }>(
+    `select a.class_id as "classId", f.asset_id as "assetId", f.fitted_on as "fittedOn", f.count
        from fitted_items f join assets a on a.id = f.asset_id
-      where a.class_id = ? order by f.asset_id, f.fitted_on`,
-    [classId],
+      where a.class_id = any(?) order by f.asset_id, f.fitted_on`,
+    [classIds],
   );
   return rows;
 }
 
-async function readModes(db: Database, classId: string): Promise<{ id: string; name: string }[]> {
-  const { rows } = await db.raw<{ rows: { id: string; name: string }[] }>(
-    `select id, name from failure_modes where class_id = ? order by lower(name)`,
-    [classId],
+async function readModes(db: Database, classIds: string[]): Promise<OfClass<{ id: string; name: string }>[]> {
+  const { rows } = await db.raw<{ rows: OfClass<{ id: string; name: string }>[] }>(
+    `select class_id as "classId", id, name from failure_modes where class_id = any(?) order by lower(name)`,
+    [classIds],
   );
   return rows;
 }
 
-/** Where several are in force, the one that comes round most often is what ends lives. */
-async function readRenewalTask(db: Database, classId: string, asOf: string): Promise<TaskRow | null> {
-  const { rows } = await db.raw<{ rows: TaskRow[] }>(
-    `select name, interval_days as "intervalDays", interval_hours as "intervalHours"
+/** One a class at most: where several are in force, the one that comes round most often is what ends lives. */
+async function readRenewalTasks(db: Database, classIds: string[], asOf: string): Promise<OfClass<TaskRow>[]> {
+  const { rows } = await db.raw<{ rows: OfClass<TaskRow>[] }>(
+    `select distinct on (class_id) class_id as "classId", name,
+            interval_days as "intervalDays", interval_hours as "intervalHours"
        from maintenance_tasks
-      where class_id = :classId and kind in ('replace', 'restore')
+      where class_id = any(:classIds) and kind in ('replace', 'restore')
         and starts_on <= :asOf and (ends_on is null or ends_on > :asOf)
-      order by coalesce(interval_days, interval_hours / 24), id limit 1`,
-    { classId, asOf },
+      order by class_id, coalesce(interval_days, interval_hours / 24), id`,
+    { classIds, asOf },
   );
-  return rows[0] ?? null;
+  return rows;
 }

@@ -74,7 +74,8 @@ export function layOutClass(
       groups.failures += group.failures;
       groups.undatedFailures += group.undatedFailures;
     }
-    for (const { id } of laidOut) places.set(id, { tag: asset.tag, siteId: asset.siteId, siteName: asset.siteName });
+    for (const { id } of laidOut)
+      places.set(id, { tag: asset.tag, siteId: asset.siteId, siteName: asset.siteName });
     if (asset.quantity === 1) visits.set(asset.id, visitsOf(own, frame));
     if (clock.isAssumed && assetClass.clock === 'operating-hours') assumed += laidOut.length;
   }

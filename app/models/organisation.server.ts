@@ -15,7 +15,12 @@ export interface Organisation {
 /** What stands in before anybody has entered the organisation. */
 const unnamed: Organisation = { name: 'Intervale', timeZone: 'UTC', currency: 'GBP', serviceLevel: 0.95 };
 
-const rowSchema = z.object({ name: z.string(), time_zone: z.string(), currency: z.string(), service_level: z.number() });
+const rowSchema = z.object({
+  name: z.string(),
+  time_zone: z.string(),
+  currency: z.string(),
+  service_level: z.number(),
+});
 
 /** The one organisation of this database; a neutral stand-in while none has been entered. */
 export async function readOrganisation(db: Database): Promise<Organisation> {

@@ -2,10 +2,13 @@ import { href, Link } from 'react-router';
 import { z } from 'zod';
 import { Breadcrumbs } from '~/components/breadcrumbs';
 import { DataTable, type Column } from '~/components/data-table';
+import { Disclosure } from '~/components/disclosure';
 import { EmptyState } from '~/components/empty-state';
 import { formatCalendarDate, formatDateTime } from '~/format/date';
+import { formatCount, formatNoun } from '~/format/number';
 import { Pagination } from '~/components/pagination';
 import { readClassHead } from '~/models/class-list.server';
+import { type GroupAsset, listGroupAssets } from '~/models/fitted-items.server';
 import { listClassRecords, type ClassRecordRow } from '~/models/class-record-list.server';
 import { organisation, requireViewer } from '~/services/viewer.server';
 import { database } from '../../db/connection';
@@ -29,7 +32,9 @@ export async function loader({ context, request, params }: Route.LoaderArgs) {
   if (head === null) throw new Response('There is no such class.', { status: 404 });
   const state = searchSchema.parse(Object.fromEntries(new URL(request.url).searchParams));
   const { rows, total } = await listClassRecords(db, viewer.siteIds, params.classId, { ...state, pageSize });
-  return { head, rows, total, state, timeZone: organisation(context).timeZone };
+  const mayDateItems = viewer.roles.some((role) => role === 'lead' || role === 'admin');
+  const groups = mayDateItems ? await listGroupAssets(db, params.classId, viewer.siteIds) : [];
+  return { head, rows, total, groups, state, timeZone: organisation(context).timeZone };
 }
 
 const kinds: readonly { kind: ListState['kind']; label: string }[] = [
@@ -39,7 +44,7 @@ const kinds: readonly { kind: ListState['kind']; label: string }[] = [
 ];
 
 export default function ClassRecords({ loaderData }: Route.ComponentProps) {
-  const { head, rows, total, state, timeZone } = loaderData;
+  const { head, rows, total, groups, state, timeZone } = loaderData;
   const addressOf = ({ kind, page }: ListState) => {
     const search = new URLSearchParams();
     if (kind) search.set('kind', kind);
@@ -60,6 +65,7 @@ export default function ClassRecords({ loaderData }: Route.ComponentProps) {
       <p className="text-grey">
         Everything recorded for {head.itemPlural}, voided records too: nothing is ever deleted.
       </p>
+      <GroupAssets groups={groups} itemPlural={head.itemPlural} />
       <ul className="my-3 flex gap-6">
         {kinds.map(({ kind, label }) => (
           <li key={label}>
@@ -93,6 +99,30 @@ export default function ClassRecords({ loaderData }: Route.ComponentProps) {
         hrefFor={(page) => addressOf({ ...state, page })}
       />
     </>
+  );
+}
+
+/** Where the fitting days of items held by the dozen are kept. */
+function GroupAssets({ groups, itemPlural }: { groups: readonly GroupAsset[]; itemPlural: string }) {
+  if (groups.length === 0) return null;
+  return (
+    <Disclosure summary={`When the ${itemPlural} of ${formatNoun(groups.length, 'asset')} were fitted`}>
+      <ul>
+        {groups.map(({ id, tag, siteName, quantity, datedItems }) => (
+          <li key={id}>
+            <Link
+              to={href('/assets/:assetId/fitted', { assetId: id })}
+              className="inline-flex min-h-11 items-center"
+            >
+              {tag}, {siteName}
+            </Link>{' '}
+            <span className="text-grey">
+              the day is known of {formatCount(datedItems)} of {formatCount(quantity)}
+            </span>
+          </li>
+        ))}
+      </ul>
+    </Disclosure>
   );
 }
 

@@ -30,6 +30,7 @@ export async function loader({ context, request, params }: Route.LoaderArgs) {
     asset,
     modes,
     question: fittedQuestion(asset, fitted),
+    mayDateItems: asset.quantity > 1 && viewer.roles.some((role) => role === 'lead' || role === 'admin'),
     today: today(timeZone),
     timeZone,
   };
@@ -100,7 +101,7 @@ export const meta: Route.MetaFunction = ({ loaderData }) => [
 ];
 
 export default function LogFailure({ loaderData, actionData }: Route.ComponentProps) {
-  const { asset } = loaderData;
+  const { asset, mayDateItems } = loaderData;
   return (
     <div className="max-w-[40rem]">
       <div className="border-hair flex items-start justify-between gap-4 border-b pb-3">
@@ -115,6 +116,26 @@ export default function LogFailure({ loaderData, actionData }: Route.ComponentPr
           other asset
         </Link>
       </div>
+      {(asset.clock === 'operating-hours' || mayDateItems) && (
+        <p className="flex flex-wrap gap-x-6">
+          {asset.clock === 'operating-hours' && (
+            <Link
+              to={href('/log/:assetId/reading', { assetId: asset.id })}
+              className="inline-flex min-h-11 items-center"
+            >
+              Read the hours meter instead
+            </Link>
+          )}
+          {mayDateItems && (
+            <Link
+              to={href('/assets/:assetId/fitted', { assetId: asset.id })}
+              className="inline-flex min-h-11 items-center"
+            >
+              When the {asset.itemPlural} were fitted
+            </Link>
+          )}
+        </p>
+      )}
       <LogForm
         key={asset.id}
         newId={loaderData.newId}

@@ -108,6 +108,43 @@ describe('class settings', () => {
     });
   });
 
+  it('keeps what a group visit costs, how long spares take and how ready a hidden function must be', async () => {
+    const fields = {
+      hiddenFailures: 'on',
+      groupPlannedCost: '45.50',
+      sparesLeadTimeDays: '42',
+      requiredAvailability: '99,5',
+    };
+    expect((await post(saving(fields))).status).toBe(302);
+    const kept = { groupPlannedCostMinor: 4550, sparesLeadTimeDays: 42, requiredAvailability: 0.995 };
+    expect(await stored()).toMatchObject({ ...kept, version: 2 });
+    expect(await auditOf(classId)).toMatchObject([
+      { before: { groupPlannedCostMinor: null, sparesLeadTimeDays: null }, after: kept },
+    ]);
+    await post(saving({ ...fields, version: '2' }));
+    expect((await stored()).version).toBe(2);
+  });
+
+  it('asks how ready it must be of hidden functions alone', async () => {
+    expect((await post(saving({ requiredAvailability: 'always', plannedCost: '5' }))).status).toBe(302);
+    expect(await stored()).toMatchObject({ requiredAvailability: null, plannedCostMinor: 500 });
+  });
+
+  it('names what differs of them when somebody else was first', async () => {
+    await post(saving({ hiddenFailures: 'on', sparesLeadTimeDays: '1', requiredAvailability: '99.999' }));
+    const { meanwhile } = await refusalOf(await post(saving({ groupPlannedCost: '20' })));
+    expect(meanwhile?.differences).toEqual([
+      { label: 'failures stay hidden', stored: 'yes', yours: 'no' },
+      {
+        label: 'cost of a planned replacement when all are done in one visit',
+        stored: 'not known',
+        yours: '£20',
+      },
+      { label: 'lead time of spares', stored: '1 day', yours: 'not known' },
+      { label: 'availability the hidden function must have', stored: '99.999 %', yours: 'not said' },
+    ]);
+  });
+
   it('saves nothing when nothing differs', async () => {
     expect((await post(saving())).status).toBe(302);
     expect((await stored()).version).toBe(1);
@@ -120,6 +157,16 @@ describe('class settings', () => {
     ['no name', { name: '' }, 'name'],
     ['a criticality of 5', { criticality: '5' }, 'criticality'],
     ['another clock than there is', { clock: 'moon' }, 'clock'],
+    ['a group cost in words', { groupPlannedCost: 'much' }, 'groupPlannedCost'],
+    ['a lead time of no days', { sparesLeadTimeDays: '0' }, 'sparesLeadTimeDays'],
+    ['a lead time of half a day', { sparesLeadTimeDays: '0.5' }, 'sparesLeadTimeDays'],
+    ['a lead time in words', { sparesLeadTimeDays: 'a week' }, 'sparesLeadTimeDays'],
+    ['a certain function', { hiddenFailures: 'on', requiredAvailability: '100' }, 'requiredAvailability'],
+    [
+      'a share for a percentage',
+      { hiddenFailures: 'on', requiredAvailability: '0.99' },
+      'requiredAvailability',
+    ],
   ])('refuses %s beside its field', async (_, differences, field) => {
     const response = await post(saving(differences));
     expect(response.status).toBe(400);

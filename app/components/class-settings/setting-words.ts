@@ -1,6 +1,8 @@
 import type { ClassSettings, ConfirmedChange } from '~/models/asset-classes.server';
 
 import { formatMoney } from '~/format/money';
+import { formatNoun } from '~/format/number';
+import { availabilityFieldText } from './availability';
 
 export const clockWords: Record<ClassSettings['clock'], string> = {
   'calendar-days': 'Days on the calendar',
@@ -18,6 +20,9 @@ export const settingLabels: Record<keyof ClassSettings, string> = {
   hiddenFailures: 'failures stay hidden',
   plannedCostMinor: 'cost of a planned replacement',
   failureCostMinor: 'cost of a failure',
+  groupPlannedCostMinor: 'cost of a planned replacement when all are done in one visit',
+  sparesLeadTimeDays: 'lead time of spares',
+  requiredAvailability: 'availability the hidden function must have',
 };
 
 /** One setting's value in words. */
@@ -26,9 +31,18 @@ export function settingWords(settings: ClassSettings, name: keyof ClassSettings,
     case 'clock':
       return clockWords[settings.clock].toLowerCase();
     case 'plannedCostMinor':
-    case 'failureCostMinor': {
+    case 'failureCostMinor':
+    case 'groupPlannedCostMinor': {
       const amount = settings[name];
       return amount === null ? 'not known' : formatMoney(amount, currency);
+    }
+    case 'sparesLeadTimeDays': {
+      const days = settings[name];
+      return days === null ? 'not known' : formatNoun(days, 'day');
+    }
+    case 'requiredAvailability': {
+      const share = settings[name];
+      return share === null ? 'not said' : `${availabilityFieldText(share)} %`;
     }
     case 'statutory':
     case 'endangersPeople':

@@ -9,6 +9,7 @@ import { ErrorSummary } from '../error-summary';
 import { Notice } from '../notice';
 import { RadioRows } from '../radio-rows';
 import { TextField } from '../text-field';
+import { availabilityFieldText } from './availability';
 import { clockWords, confirmWords, unconfirmedWords } from './setting-words';
 
 interface SettingsFormProps {
@@ -43,6 +44,7 @@ export function SettingsForm({
   const text = (name: string, stored: string) => (sent ? asText(sent[name]) : stored);
   const ticked = (name: string, stored: boolean) => (sent ? sent[name] !== undefined : stored);
   const money = (minor: number | null) => (minor === null ? '' : moneyFieldText(minor, currency));
+  const availability = (share: number | null) => (share === null ? '' : availabilityFieldText(share));
   const errors = lastResult?.error ?? {};
   const errorsOf = (name: string) => errors[name] ?? undefined;
   const summary = [
@@ -103,6 +105,26 @@ export function SettingsForm({
         errors={errorsOf('failureCost')}
         maxLength={20}
       />
+      <TextField
+        name="groupPlannedCost"
+        label="A planned replacement, when all in one asset are done in one visit"
+        hint="For assets that hold several: one item’s part of what such a visit costs. Filling it in prices the class as renewed in groups."
+        inputMode="decimal"
+        defaultValue={text('groupPlannedCost', money(assetClass.groupPlannedCostMinor))}
+        errors={errorsOf('groupPlannedCost')}
+        maxLength={20}
+      />
+
+      <h2 className="mt-8">Spares</h2>
+      <TextField
+        name="sparesLeadTimeDays"
+        label="Days until an ordered spare is here"
+        hint="From it follows how many to hold. Leave it empty if nobody knows."
+        inputMode="numeric"
+        defaultValue={text('sparesLeadTimeDays', asText(assetClass.sparesLeadTimeDays?.toString()))}
+        errors={errorsOf('sparesLeadTimeDays')}
+        maxLength={6}
+      />
 
       <h2 className="mt-8">What depends on it</h2>
       <RadioRows
@@ -124,11 +146,24 @@ export function SettingsForm({
         hint="As above: evidence only, and licensed practice decides."
         defaultChecked={ticked('endangersPeople', assetClass.endangersPeople)}
       />
-      <Checkbox
-        name="hiddenFailures"
-        label="A failure stays hidden until somebody looks for it"
-        defaultChecked={ticked('hiddenFailures', assetClass.hiddenFailures)}
-      />
+      <div className="group/hidden-failures">
+        <Checkbox
+          name="hiddenFailures"
+          label="A failure stays hidden until somebody looks for it"
+          defaultChecked={ticked('hiddenFailures', assetClass.hiddenFailures)}
+        />
+        <div className="hidden group-has-[[name=hiddenFailures]:checked]/hidden-failures:block">
+          <TextField
+            name="requiredAvailability"
+            label="Share of the time it must be ready, in percent"
+            hint="From it follows how often to test it. Leave it empty if nobody has said."
+            inputMode="decimal"
+            defaultValue={text('requiredAvailability', availability(assetClass.requiredAvailability))}
+            errors={errorsOf('requiredAvailability')}
+            maxLength={10}
+          />
+        </div>
+      </div>
 
       <h2 className="mt-8">Clock</h2>
       <RadioRows
