@@ -10,6 +10,7 @@ import { FigureList } from '../figure-list';
 import { formatClock, formatFixed, formatNoun, formatP, formatPercent, formatTrimmed } from '~/format/number';
 import { QuestionSection } from '../question-section';
 import { VERDICT_COLOUR } from '../verdict';
+import { RoughIntervals } from './rough-intervals';
 import { ShapeEstimate } from './shape-estimate';
 
 interface QuestionAgeProps {
@@ -46,6 +47,7 @@ export function QuestionAge(props: QuestionAgeProps) {
             Each mark is one failure, placed by how many of its peers were younger that day. If age did not
             matter they would lie level.
           </p>
+          <RoughIntervals failures={fit.failures} />
           <FigureList
             items={[
               { name: 'Shape β', value: <ShapeEstimate fit={fit} /> },

@@ -7,6 +7,7 @@ import { Estimate } from '../estimate';
 import { FigureList } from '../figure-list';
 import { formatClock, formatCount, formatFixed, formatP, formatTrimmed } from '~/format/number';
 import { QuestionSection } from '../question-section';
+import { RoughIntervals } from './rough-intervals';
 import { ShapeEstimate } from './shape-estimate';
 
 interface QuestionTrendProps {
@@ -31,6 +32,7 @@ export function QuestionTrend({ conclusion, findings, figures, itemSingular }: Q
       words={
         <>
           <p>{sentence}</p>
+          <RoughIntervals failures={overall.failures} />
           <FigureList
             items={[
               {
