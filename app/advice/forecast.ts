@@ -1,7 +1,7 @@
 import { meanTimeInterval } from '~/reliability/exponential';
 import { expectedFailuresAtConstantRate } from '~/reliability/expected-failures';
 import { FailuresToCome } from '~/reliability/failures-to-come';
-import { PoissonMixture } from '~/reliability/poisson-mixture';
+import { CountMixture } from '~/reliability/count-mixture';
 import type { Position } from '~/reliability/position';
 import type { NoPowerLawFit, PowerLawFit } from '~/reliability/power-law';
 import { weibullDraws } from '~/reliability/quasi-random-draws';
@@ -49,17 +49,17 @@ const finer = 4;
 
 interface Expected {
   readonly mean: number;
-  readonly mixture: Pick<PoissonMixture, 'quantile'>;
+  readonly mixture: Pick<CountMixture, 'quantile'>;
 }
 
 /**
  * Failures expected of the class in the next 1, 3 and 12 months, each with its 90 % range, the mean time
  * between failures with its interval, and the spares a lead time needs.
  *
- * Items that wear out (interval of the life shape above 1, at least 5 failures) fail by their present ages,
+ * Items whose age matters (interval of the life shape on one side of 1, at least 5 failures) fail by their present ages,
  * renewals in between and today's planned interval included; positions of unknown age are spread over the
  * known ages, and each clock is taken to run at the mean pace. All others fail at a constant rate. Both
- * ranges mix Poisson scatter with what is not known of the rate or the shape.
+ * ranges mix the scatter of such counts with what is not known of the rate or the shape.
  */
 export function forecast(input: ForecastInput): ForecastFindings {
   const { now, leadTimeDays, serviceLevel } = input;
@@ -101,9 +101,11 @@ function basisOf(
   { ages }: ItemsInPlace,
 ): { basis: (typeof forecastBases)[number]; rate: CountInExposure } {
   const count = ({ failures, exposure }: CountInExposure) => ({ failures, exposure });
-  const wearsOut =
-    fit.kind === 'fit' && fit.failures >= fewestFailuresForVerdict && (fit.interval.low ?? 0) > 1;
-  if (wearsOut && ages.length > 0) return { basis: 'ages', rate: count(overall) };
+  const ageMatters =
+    fit.kind === 'fit' &&
+    fit.failures >= fewestFailuresForVerdict &&
+    ((fit.interval.low ?? 0) > 1 || (fit.interval.high ?? Infinity) < 1);
+  if (ageMatters && ages.length > 0) return { basis: 'ages', rate: count(overall) };
   const before = {
     failures: overall.failures - lastYear.failures,
     exposure: overall.exposure - lastYear.exposure,
@@ -140,11 +142,12 @@ function byAges(
   const draws: Weibull[] = weibullDraws(fit).slice(0, forecastDraws);
   return (days) => {
     const horizon = exposureToCome(inPlace, now, days) / inPlace.positions.length;
-    if (!(horizon > 0)) return { mean: 0, mixture: new PoissonMixture([0]) };
+    if (!(horizon > 0)) return { mean: 0, mixture: new CountMixture([0]) };
     const ahead = new FailuresToCome({ ages, horizon, plannedInterval: currentInterval });
     const steps = Math.min(mostSteps, Math.max(stepsOfAMonth, Math.ceil(days / daysAMonth)));
     const means = draws.map((draw) => ahead.expected(draw, steps));
-    return { mean: ahead.expected(fit, finer * steps), mixture: new PoissonMixture(means) };
+    const dispersion = ahead.dispersion(fit, finer * steps);
+    return { mean: ahead.expected(fit, finer * steps), mixture: new CountMixture(means, dispersion) };
   };
 }
 

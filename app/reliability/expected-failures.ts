@@ -1,5 +1,5 @@
 import { FailuresToCome, type WearOutPeriod } from './failures-to-come';
-import { PoissonMixture } from './poisson-mixture';
+import { CountMixture } from './count-mixture';
 import { chiSquaredQuantile } from './special-functions';
 import type { Weibull } from './weibull';
 
@@ -42,7 +42,7 @@ export function expectedFailuresAtConstantRate(
 /**
  * Wear-out: each item fails within the period with its conditional chance given its age; what is fitted
  * then starts at age 0 and may fail again (renewal equation), and items that reach the planned interval
- * are renewed there without a failure. The range mixes Poisson scatter over the draws of the fit.
+ * are renewed there without a failure. The range mixes the scatter of such counts over the draws of the fit.
  *
  * @param confidence of the two-sided range, in (0, 1).
  */
@@ -56,15 +56,27 @@ export function expectedFailuresByAge(
   const ahead = new FailuresToCome(period);
   const mean = ahead.expected(fit, fineSteps);
   const means = draws.map((draw) => ahead.expected(draw, coarseSteps));
-  return summarise(mean, means.length > 0 ? means : [mean], confidence);
+  return summarise(
+    mean,
+    means.length > 0 ? means : [mean],
+    confidence,
+    ahead.dispersion(fit, dispersionSteps),
+  );
 }
 
 /** Grid steps within the period: for the fit itself, and for each draw. */
 const fineSteps = 192;
 const coarseSteps = 12;
+/** Steps for the dispersion, of the fit alone: it moves little from draw to draw. */
+const dispersionSteps = 48;
 
-function summarise(mean: number, means: readonly number[], confidence: number): ExpectedFailures {
-  const mixture = new PoissonMixture(means);
+function summarise(
+  mean: number,
+  means: readonly number[],
+  confidence: number,
+  dispersion = 1,
+): ExpectedFailures {
+  const mixture = new CountMixture(means, dispersion);
   const tail = (1 - confidence) / 2;
   return {
     mean,

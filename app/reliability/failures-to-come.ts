@@ -17,6 +17,10 @@ const mostGroups = 16;
 /** The grid is made finer where a period spans several lives, and given up where it spans many. */
 const stepsPerLife = 12;
 const manyLives = 40;
+/** Cells of the grid on which the dispersion is computed, whatever the period. */
+const mostCells = 240;
+/** Numerical error must not make a count certain. */
+const leastDispersion = 0.05;
 
 interface AgeGroup {
   readonly age: number;
@@ -93,6 +97,56 @@ export class FailuresToCome {
       total += count * Math.max(0, expected);
     }
     return total;
+  }
+
+  /**
+   * Variance over mean of the count, were the life known: positions are independent, and for one of them
+   * E[N(N − 1)] = 2 ∫ M(t − u) dM_a(u), with M_a the failures expected of the item in place and those that
+   * follow it, M of a new one (renewal theory, Cox 1962).
+   *
+   * @returns 1, as for Poisson, where no failure is expected.
+   */
+  dispersion(life: Weibull, steps: number): number {
+    const { horizon } = this.#period;
+    const planned = this.#planned;
+    const cells = Math.min(
+      mostCells,
+      Math.max(steps, Math.ceil((stepsPerLife * horizon) / Math.min(life.scale, planned))),
+    );
+    const h = horizon / cells;
+    const failedBy = (age: number, time: number): number =>
+      1 -
+      Math.exp(
+        weibullCumulativeHazard(life, age) - weibullCumulativeHazard(life, Math.min(age + time, planned)),
+      );
+    const leftBy = (age: number, time: number): number => (age + time >= planned ? 1 : failedBy(age, time));
+    const at = (
+      time: (index: number) => number,
+      age: number,
+      of: typeof failedBy,
+      length: number,
+    ): Float64Array => Float64Array.from({ length }, (_, index) => of(age, time(index)));
+    const end = (index: number) => index * h;
+    const middle = (index: number) => (index + 0.5) * h;
+    const fresh = renewalTable(at(end, 0, failedBy, cells + 1), at(middle, 0, leftBy, cells));
+    let mean = 0;
+    let variance = 0;
+    for (const { age, count } of this.#groups) {
+      const failed = at(end, age, failedBy, cells + 1);
+      const left = at(middle, age, leftBy, cells);
+      let previous = 0;
+      let pairs = 0;
+      let expected = 0;
+      for (let i = 1; i <= cells; i += 1) {
+        expected = failed[i]!;
+        for (let j = 1; j <= i; j += 1) expected += left[i - j]! * (fresh[j]! - fresh[j - 1]!);
+        pairs += (expected - previous) * ((fresh[cells - i]! + fresh[cells - i + 1]!) / 2);
+        previous = expected;
+      }
+      mean += count * expected;
+      variance += count * (expected + 2 * pairs - expected * expected);
+    }
+    return mean > 0 ? Math.max(leastDispersion, variance / mean) : 1;
   }
 
   #grid(steps: number): Grid {

@@ -1,3 +1,4 @@
+import betainc from '@stdlib/math-base-special-betainc';
 import gammaFunction from '@stdlib/math-base-special-gamma';
 import gammainc from '@stdlib/math-base-special-gammainc';
 import gammaln from '@stdlib/math-base-special-gammaln';
@@ -135,4 +136,9 @@ export function binomialQuantile(probability: number, n: number, chance: number)
 /** x with P(X ≤ x) = p for X beta with shapes a and b. */
 export function betaQuantile(p: number, a: number, b: number): number {
   return libraryBetaQuantile(p, a, b);
+}
+
+/** I_x(a, b): the regularised incomplete beta function, x in [0, 1], a and b above 0. */
+export function regularizedBeta(x: number, a: number, b: number): number {
+  return betainc(x, a, b, true, false);
 }

@@ -1,3 +1,4 @@
+import { seededRandom, weibullLife } from '../../support/seeded-random';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { ageReplacementCostRate, bestAgeReplacement } from '~/reliability/age-replacement';
@@ -9,7 +10,8 @@ import {
   meanAvailability,
 } from '~/reliability/failure-finding';
 import { bestMinimalRepairInterval } from '~/reliability/minimal-repair';
-import { PoissonMixture } from '~/reliability/poisson-mixture';
+import { CountMixture } from '~/reliability/count-mixture';
+import { FailuresToCome } from '~/reliability/failures-to-come';
 import { quantileOfSample } from '~/reliability/quantile-of-sample';
 import { drawCount, normalPairs, weibullDraws } from '~/reliability/quasi-random-draws';
 import { weibullRenewalFunction } from '~/reliability/renewal-function';
@@ -288,13 +290,13 @@ describe('expected failures', () => {
 });
 
 test('a mixture of one mean is Poisson, and its quantile inverts its distribution', () => {
-  expect(new PoissonMixture([7.5]).quantile(0.95)).toBe(sparesNeeded(7.5, 0.95));
+  expect(new CountMixture([7.5]).quantile(0.95)).toBe(sparesNeeded(7.5, 0.95));
   fc.assert(
     fc.property(
       fc.array(fc.double({ min: 0, max: 5000, noNaN: true }), { minLength: 1, maxLength: 120 }),
       fc.double({ min: 0.001, max: 0.999, noNaN: true }),
       (means, p) => {
-        const mixture = new PoissonMixture(means);
+        const mixture = new CountMixture(means);
         const k = mixture.quantile(p);
         expect(mixture.cdf(k)).toBeGreaterThanOrEqual(p);
         if (k > 0) expect(mixture.cdf(k - 1)).toBeLessThan(p);
@@ -302,8 +304,8 @@ test('a mixture of one mean is Poisson, and its quantile inverts its distributio
     ),
     { numRuns: 50 },
   );
-  expect(() => new PoissonMixture([])).toThrow(RangeError);
-  expect(() => new PoissonMixture([NaN])).toThrow(RangeError);
+  expect(() => new CountMixture([])).toThrow(RangeError);
+  expect(() => new CountMixture([NaN])).toThrow(RangeError);
 });
 
 test('spares refuse a demand or level outside their range', () => {
@@ -315,4 +317,36 @@ test('spares refuse a demand or level outside their range', () => {
 test('silence at a constant rate', () => {
   expect(silenceChance(0.01, 460.517)).toBeCloseTo(0.01, 6);
   expect(silenceChance(0.01, 0)).toBe(1);
+});
+
+describe('the scatter of counts where ages matter', () => {
+  const period = { ages: Array.from({ length: 30 }, (_, i) => i * 30), horizon: 365, plannedInterval: null };
+
+  test('is Poisson for a memoryless life, and has the moments of a simulation for others', () => {
+    expect(new FailuresToCome(period).dispersion({ shape: 1, scale: 900 }, 96)).toBeCloseTo(1, 2);
+    const random = seededRandom(5);
+    for (const shape of [0.6, 2, 3]) {
+      const counts = Array.from({ length: 4000 }, () =>
+        period.ages.reduce((sum, age) => {
+          let at = weibullLife(random, shape, 900, age) - age;
+          let failures = 0;
+          for (; at <= period.horizon; at += weibullLife(random, shape, 900)) failures += 1;
+          return sum + failures;
+        }, 0),
+      );
+      const mean = counts.reduce((sum, count) => sum + count, 0) / counts.length;
+      const variance = counts.reduce((sum, count) => sum + (count - mean) ** 2, 0) / counts.length;
+      const dispersion = new FailuresToCome(period).dispersion({ shape, scale: 900 }, 96);
+      expect(dispersion / (variance / mean)).toBeGreaterThan(0.92);
+      expect(dispersion / (variance / mean)).toBeLessThan(1.08);
+    }
+  });
+
+  test('gives the binomial and the negative binomial where their numbers are whole', () => {
+    // Binomial of 20 trials at 1/4, P(X ≤ 5) = 0.617173; R's pbinom(5, 20, .25).
+    expect(new CountMixture([5], 0.75).cdf(5)).toBeCloseTo(0.6171727, 6);
+    // Negative binomial, size 5, mean 5, P(X ≤ 5) = 0.6230469; R's pnbinom(5, 5, .5).
+    expect(new CountMixture([5], 2).cdf(5)).toBeCloseTo(0.6230469, 6);
+    expect(() => new CountMixture([5], 0)).toThrow(RangeError);
+  });
 });
