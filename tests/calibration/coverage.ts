@@ -38,6 +38,8 @@ export interface CoverageRow extends Share {
 const scale = 900;
 const watchedDays = 1096;
 const daysAYear = 365;
+/** With fewer cases a share says nothing. */
+const fewestToShow = 100;
 const costs = { planned: 10_000, failure: 100_000 };
 
 /** How often each interval holds the truth, for classes of one shape with about so many failures. */
@@ -75,7 +77,7 @@ export function coverage(random: Random, shape: number, failures: number, runs: 
     noteForecast(whole, seen, fit);
   }
   return intervals
-    .filter((name) => held.get(name)!.length > 0)
+    .filter((name) => held.get(name)!.length >= fewestToShow)
     .map((interval) => ({ interval, shape, failures, ...shareOf(held.get(interval)!) }));
 
   function noteLife(
@@ -92,7 +94,9 @@ export function coverage(random: Random, shape: number, failures: number, runs: 
   ): void {
     const priced = priceRunToFailure(fit, histories, positions);
     if (priced.kind !== 'priced' || priced.changes.best === null) return;
-    const { interval, savingPerYear } = priced.changes.best;
+    const { interval, savingPerYear, share } = priced.changes.best;
+    // As on the screen: money is only named where items are seen to wear out and most draws agree.
+    if (fit.kind !== 'fit' || !((fit.interval.low ?? 0) > 1) || share < 0.8) return;
     const saving = costRate(truth, null) - costRate(truth, interval);
     note('saving', saving * 365.25 * positions, savingPerYear.low, savingPerYear.high);
   }

@@ -19,7 +19,7 @@ const failureCounts = [5, 10, 20, 40, 80];
 const figures = {
   coverage: shapes.flatMap((shape, row) =>
     failureCounts.flatMap((failures, column) =>
-      coverage(seededRandom(1000 + 10 * row + column), shape, failures, 600),
+      coverage(seededRandom(1000 + 10 * row + column), shape, failures, 1500),
     ),
   ),
   testSizes: testSizes(seededRandom(2000), 2000),
