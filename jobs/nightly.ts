@@ -42,7 +42,7 @@ function allHold({ pWearOutOfModes }: RunTests): RunDecisions {
 /**
  * Assesses every class as of a day and puts the results in force together.
  *
- * Records are read class by class within one snapshot, so that memory does not grow with the number of
+ * Records are read a few classes at a time within one snapshot, so that memory does not grow with the number of
  * classes and all classes are seen at the same moment. A class that cannot be computed is recorded with
  * its reason and keeps its previous assessment. If the process dies, the previous night stays in force.
  * The same records as of the same day give the same numbers to the last bit.

@@ -1,4 +1,4 @@
-import { assetAt, failureAt, idOf } from './support/class-records';
+import { alarmInForce, assetAt, assetOfClass, failureAt, idOf } from './support/class-records';
 import { csvFile, upload } from './support/imports';
 import { ensureNight } from './support/run-nightly';
 import { expect, test } from './support/test';
@@ -54,9 +54,25 @@ test.describe('for a lead', () => {
   test('settings of a class, with and without errors', async ({ page }) => {
     await page.goto(`/classes/${await idOf('asset_classes', 'Circulation pump seal')}/settings`);
     await expectNoViolations(page);
-    await page.getByLabel('A planned replacement').fill('twelve');
+    await page.getByLabel('A planned replacement', { exact: true }).fill('twelve');
     await page.getByRole('button', { name: 'Save', exact: true }).click();
     await expect(page.getByRole('alert')).toBeVisible();
+    await expectNoViolations(page);
+  });
+
+  test('clearing an alarm, with and without a reason', async ({ page }) => {
+    await page.goto(`/alarms/${await alarmInForce()}/clear`);
+    await expectNoViolations(page);
+    await page.getByRole('textbox', { name: /why/i }).fill('   ');
+    await page.getByRole('button', { name: 'Clear the alarm' }).click();
+    await expect(page.getByRole('alert')).toBeVisible();
+    await expectNoViolations(page);
+  });
+
+  test('when the items of a group were fitted', async ({ page }) => {
+    const { id } = await assetOfClass('Corridor lamp');
+    await page.goto(`/assets/${id}/fitted`);
+    await expect(page.getByRole('main')).toContainText('fitted');
     await expectNoViolations(page);
   });
 
@@ -97,6 +113,15 @@ test.describe('for a technician', () => {
     await expectNoViolations(page);
     await page.getByRole('button', { name: 'Undo this entry' }).click();
     await expect(page.getByRole('button', { name: 'Put it back' })).toBeVisible();
+    await expectNoViolations(page);
+  });
+
+  test('a meter reading, with and without errors', async ({ page }) => {
+    const { id } = await assetAt('Orrin Library');
+    await page.goto(`/log/${id}/reading`);
+    await expectNoViolations(page);
+    await page.getByRole('button', { name: 'Save', exact: true }).click();
+    await expect(page.getByRole('alert')).toBeVisible();
     await expectNoViolations(page);
   });
 

@@ -68,6 +68,22 @@ export async function assetAt(siteName: string): Promise<{ id: string; tag: stri
   return z.object({ id: z.string(), tag: z.string() }).parse(row);
 }
 
+/** Some asset of a class. */
+export async function assetOfClass(className: string): Promise<{ id: string; tag: string }> {
+  const row: unknown = await database()('assets as a')
+    .join('asset_classes as c', 'c.id', 'a.class_id')
+    .where('c.name', className)
+    .orderBy('a.tag')
+    .first('a.id', 'a.tag');
+  return z.object({ id: z.string(), tag: z.string() }).parse(row);
+}
+
+/** Id of some alarm that nobody has cleared. */
+export async function alarmInForce(): Promise<string> {
+  const row: unknown = await database()('alarms').whereNull('cleared_at').first('id');
+  return z.object({ id: z.string() }).parse(row).id;
+}
+
 /** Id of some failure at a site. */
 export async function failureAt(siteName: string): Promise<string> {
   const row: unknown = await database()('failures as f')
