@@ -126,7 +126,7 @@ test('class settings: an error stands beside its field, what was typed stays, th
 }) => {
   await openClass(page, 'Hand dryer motor');
   await page.getByRole('link', { name: 'Class settings' }).click();
-  const planned = page.getByLabel('A planned replacement');
+  const planned = page.getByLabel('A planned replacement', { exact: true });
   const failure = page.getByLabel('A failure, with all that follows from it');
   await planned.fill('twelve');
   await failure.fill('345.60');
