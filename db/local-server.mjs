@@ -12,6 +12,7 @@ import { runningPostmaster, stopPostmaster } from './local/postmaster.mjs';
  * @typedef {object} LocalServer a private PostgreSQL on loopback, in use by this process
  * @property {string} url connection string of its database
  * @property {string} folder where its data lie
+ * @property {string} logFile what it logs
  * @property {boolean} outside whether that is outside the clone
  * @property {boolean} isNew whether its data were made just now
  * @property {() => boolean} isRunning
@@ -77,6 +78,7 @@ export async function acquireServer({ root: clone, name, throwaway = false, sign
   const lock = join(local, `${name}.lock`);
   const users = userRegister(join(local, `${name}.users`));
   const passwordFile = join(local, `${name}.password`);
+  const logFile = join(local, `${name}.log`);
 
   /** @param {string} folder */
   const remove = (folder) => {
@@ -98,7 +100,7 @@ export async function acquireServer({ root: clone, name, throwaway = false, sign
       throwaway,
       binaries: running ? '' : chooseBinaries(data).folder,
       password: keptSecret(passwordFile, 24),
-      logFile: join(local, `${name}.log`),
+      logFile,
     };
     const isNew = !existsSync(data);
     const bringUp = async () => {
@@ -129,6 +131,7 @@ export async function acquireServer({ root: clone, name, throwaway = false, sign
     url,
     isNew,
     folder: place.folder,
+    logFile,
     outside: place.outside,
     isRunning: () => isRunning(pid),
     release: (hurry) => withLock(lock, () => stop(pid, place.folder, hurry)),

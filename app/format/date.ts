@@ -41,8 +41,25 @@ export function formatDateTime(instant: Date, zone: string, length: 'long' | 'sh
   return `${dateFrom(parts, length)}, ${parts.hour}:${parts.minute}`;
 }
 
-/** A calendar date "2026-03-14", which belongs to no zone: "14 March 2026". */
+const months = [
+  'January',
+  'February',
+  'March',
+  'April',
+  'May',
+  'June',
+  'July',
+  'August',
+  'September',
+  'October',
+  'November',
+  'December',
+];
+
+/** A calendar date "2026-03-14", which belongs to no zone: "14 March 2026". What is no date is not known. */
 export function formatCalendarDate(isoDate: string, length: 'long' | 'short' = 'long'): string {
-  if (!/^\d{4}-\d{2}-\d{2}$/.test(isoDate)) return NOT_KNOWN;
-  return formatDate(new Date(`${isoDate}T12:00:00Z`), 'UTC', length);
+  const [, year, month, day] = /^(\d{4})-(\d{2})-(\d{2})$/.exec(isoDate) ?? [];
+  const exists = year !== undefined && !Number.isNaN(Date.parse(isoDate));
+  if (!exists) return NOT_KNOWN;
+  return dateFrom({ year, month: months[Number(month) - 1] ?? '', day: String(Number(day)) }, length);
 }

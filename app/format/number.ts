@@ -23,10 +23,8 @@ function numberFormat(options: Intl.NumberFormatOptions): Intl.NumberFormat {
 }
 
 function spell(value: number, options: Intl.NumberFormatOptions): string {
-  return numberFormat(options)
-    .formatToParts(value)
-    .map((part) => (part.type === 'group' ? THIN : part.type === 'minusSign' ? MINUS : part.value))
-    .join('');
+  // A page spells hundreds of numbers: in British English a comma only ever groups and a hyphen only ever negates.
+  return numberFormat(options).format(value).replaceAll(',', THIN).replace('-', MINUS);
 }
 
 /** A number with a fixed count of decimals: `formatFixed(1.3996, 2)` is "1.40". */

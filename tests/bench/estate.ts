@@ -11,13 +11,13 @@ const even = (seed: string, number: string) =>
   `((hashint8extended((${number})::bigint, ${seed}) & 4503599627370495) + 0.5) / 4503599627370496`;
 
 /**
- * Fills an empty database with classes of 30 assets watched for ten years, made within PostgreSQL: about 100
- * failures of two modes, two inspections an asset, and in every third class planned renewals.
+ * Fills an empty database with classes of so many assets (30 unless said otherwise, 99 at most) watched for ten
+ * years, made within PostgreSQL: about 3.4 failures an asset, of two modes, two inspections an asset, and in every third class planned renewals.
  *
  * Lives are Weibull with shapes 0.8, 1, 1.6, 2.5 and 4 in turn. Every fifth class runs on operating hours,
  * every seventh is renewed as a group; a tenth of the failures is patched; all have costs and a lead time.
  */
-export async function fillEstate(db: Database, classes: number): Promise<void> {
+export async function fillEstate(db: Database, classes: number, assetsAClass = 30): Promise<void> {
   await db.raw(`insert into organisations (name, time_zone) values ('Bench Estate', 'Europe/London')`);
   await db.raw(`insert into sites (name) select 'Site ' || n from generate_series(1, 10) n`);
   await db.raw(
@@ -45,11 +45,11 @@ export async function fillEstate(db: Database, classes: number): Promise<void> {
     `insert into assets (id, class_id, site_id, tag, in_service_on, watched_from, item_fitted_on, duty_hours_per_day)
      select md5('asset ' || c || ' ' || a)::uuid, md5('class ' || c)::uuid, s.id, c || '-' || a,
             '${watchedFrom}', '${watchedFrom}', '${watchedFrom}', case when c % 5 = 0 then 9 end
-       from generate_series(1, :classes::integer) c, generate_series(1, 30) a
+       from generate_series(1, :classes::integer) c, generate_series(1, :assetsAClass::integer) a
        join sites s on s.name = 'Site ' || (1 + a % 10)`,
-    { classes },
+    { classes, assetsAClass },
   );
-  await addRecords(db, classes);
+  await addRecords(db, classes, assetsAClass);
   await db.raw(`analyze`);
 }
 
@@ -57,7 +57,7 @@ export async function fillEstate(db: Database, classes: number): Promise<void> {
  * A life ends in a failure, or by plan where the class has a task and the item gets that old. The checks of
  * each record's date are left out while filling: the dates are right by the way they are made.
  */
-async function addRecords(db: Database, classes: number): Promise<void> {
+async function addRecords(db: Database, classes: number, assetsAClass: number): Promise<void> {
   const triggers = (verb: string) =>
     db.raw(
       `alter table failures ${verb} trigger failures_check_date;
@@ -73,7 +73,7 @@ async function addRecords(db: Database, classes: number): Promise<void> {
          from (select c, a, k,
                       1040 * (-ln(${even('1', '(c * 100 + a) * 100 + k')}))
                         ^ (1 / (array[0.8, 1, 1.6, 2.5, 4])[1 + c % 5]) as life
-                 from generate_series(1, ${classes}) c, generate_series(1, 30) a, generate_series(1, 15) k
+                 from generate_series(1, ${classes}) c, generate_series(1, ${assetsAClass}) a, generate_series(1, 15) k
               ) lives
        ) ends where day <= '${firstNight}'`,
   );
@@ -93,7 +93,7 @@ async function addRecords(db: Database, classes: number): Promise<void> {
      union all
      select md5('visit ' || c || ' ' || a || ' ' || v)::uuid, md5('asset ' || c || ' ' || a)::uuid,
             md5('class ' || c)::uuid, 'inspect', false, '${watchedFrom}'::date + v * 1200 + a
-       from generate_series(1, ${classes}) c, generate_series(1, 30) a, generate_series(1, 2) v`,
+       from generate_series(1, ${classes}) c, generate_series(1, ${assetsAClass}) a, generate_series(1, 2) v`,
   );
   await db.raw(`drop table bench_ends`);
   await triggers('enable');
