@@ -47,7 +47,10 @@ export function summariseLives(histories: readonly History[]): LifeSummary {
 }
 
 /** Failures per clock unit at the ages under watch, were the items of this life: the mean hazard over the exposure. */
-export function hazardAtWatchedAges({ exposureByAge }: LifeSummary, { shape, scale }: Weibull): number {
+export function hazardAtWatchedAges(
+  exposureByAge: LifeSummary['exposureByAge'],
+  { shape, scale }: Weibull,
+): number {
   let failures = 0;
   let total = 0;
   for (const { from, to, exposure } of exposureByAge) {

@@ -1,7 +1,7 @@
 import { meanTimeInterval } from '~/reliability/exponential';
 import { approximateFailureFindingInterval, failureFindingInterval } from '~/reliability/failure-finding';
 import type { NoPowerLawFit, PowerLawFit } from '~/reliability/power-law';
-import { weibullDraws } from '~/reliability/quasi-random-draws';
+import { weibullDraws, type UncertainWeibull } from '~/reliability/quasi-random-draws';
 import {
   ageReplacementPolicy,
   blockReplacementPolicy,
@@ -15,7 +15,13 @@ import { weibullMeanLife, type Weibull } from '~/reliability/weibull';
 import type { ClockKind } from './class-evidence';
 import { hazardAtWatchedAges, type LifeSummary } from './life-summary';
 import { practicableInterval } from './practicable-interval';
-import type { Change, FailureFinding, Policy, PricedSchedule, ScheduleFindings } from './schedule-findings';
+import type {
+  Change,
+  FailureFinding,
+  PriceBasis,
+  PricedSchedule,
+  ScheduleFindings,
+} from './schedule-findings';
 import { trialInterval } from './trial-interval';
 
 export interface ScheduleInput {
@@ -63,14 +69,16 @@ const curveDraws = 80;
  */
 export function priceSchedule(input: ScheduleInput): ScheduleFindings {
   const { fit, costs, lives, current, positions, hidden } = input;
+  const inGroups = input.isGroup || costs.groupPlannedMinor !== null;
+  const basis = fit.kind === 'fit' && drawsOf(fit) !== null ? basisOf(input, fit, inGroups) : null;
   const always = {
+    basis,
     current: { interval: current.interval, task: current.task },
     positions,
     supportedAge: lives.supportedAge,
     failureFinding: hidden === null ? null : findFailures(hidden, input.clock),
   };
   if (fit.kind !== 'fit') return { kind: 'no-fit', reason: 'no-shape', ...always };
-  const inGroups = input.isGroup || costs.groupPlannedMinor !== null;
   const planned = (inGroups ? costs.groupPlannedMinor : null) ?? costs.plannedMinor ?? 0;
   const failure = costs.failureMinor ?? 0;
   if (!(planned > 0 && failure > 0)) {
@@ -80,10 +88,44 @@ export function priceSchedule(input: ScheduleInput): ScheduleFindings {
     ];
     return { kind: 'costs-missing', missing, ...always };
   }
-  const policy =
-    input.patchedShare > 0.5 ? 'minimal-repair' : inGroups ? 'block-replacement' : 'age-replacement';
-  const priced = price(input, fit, policy, { planned, failure });
-  return priced === null ? { kind: 'no-fit', reason: 'out-of-range', ...always } : { ...priced, ...always };
+  const priced = basis === null ? null : price({ ...input, basis, supportedAge: lives.supportedAge }, { planned, failure }, []);
+  return priced === null
+    ? { kind: 'no-fit', reason: 'out-of-range', ...always }
+    : { ...priced.schedule, ...always };
+}
+
+function basisOf(input: ScheduleInput, fit: PowerLawFit, inGroups: boolean): PriceBasis {
+  return {
+    policy: input.patchedShare > 0.5 ? 'minimal-repair' : inGroups ? 'block-replacement' : 'age-replacement',
+    unitsAYear: input.unitsAYear,
+    fit: { shape: fit.shape, scale: fit.scale, covariance: { ...fit.covariance } },
+    exposureByAge: input.lives.exposureByAge.map((stretch) => ({ ...stretch })),
+  };
+}
+
+/**
+ * Prices one more interval, at costs of one's own choice, on what the night's prices rest on: the same code and
+ * the same draws, so that trying the night's own numbers gives the night's own answer to the digit.
+ *
+ * @param schedule of the night.
+ * @param tried clock units, null for no planned renewal; costs in integer minor units above 0.
+ * @returns null where no price comes out: no life shape, or one too uncertain or extreme.
+ */
+export function tryInterval(
+  schedule: ScheduleFindings,
+  tried: { interval: number | null; plannedMinor: number; failureMinor: number },
+  clock: ClockKind,
+): { schedule: PricedSchedule; change: Change } | null {
+  const { basis, current, positions, supportedAge, failureFinding } = schedule;
+  if (basis === null) return null;
+  const input = { basis, clock, current, positions, supportedAge, maskedAge: null };
+  const priced = price(input, { planned: tried.plannedMinor, failure: tried.failureMinor }, [tried.interval]);
+  const change = priced?.changeTo(tried.interval) ?? null;
+  if (priced === null || change === null) return null;
+  return {
+    schedule: { ...priced.schedule, basis, current, positions, supportedAge, failureFinding },
+    change,
+  };
 }
 
 interface Costs {
@@ -91,17 +133,34 @@ interface Costs {
   readonly failure: number;
 }
 
-type Priced = Omit<PricedSchedule, 'current' | 'positions' | 'supportedAge' | 'failureFinding'>;
+type Priced = Omit<PricedSchedule, 'basis' | 'current' | 'positions' | 'supportedAge' | 'failureFinding'>;
 
-/** Null where the fit is so uncertain or extreme that a price is no longer a whole number that can be told. */
-function price(input: ScheduleInput, fit: PowerLawFit, policy: Policy, costs: Costs): Priced | null {
-  const { clock, current, maskedAge, unitsAYear, lives } = input;
+interface PriceInput {
+  readonly basis: PriceBasis;
+  readonly clock: ClockKind;
+  readonly current: { readonly interval: number | null };
+  readonly positions: number;
+  readonly supportedAge: number | null;
+  readonly maskedAge: number | null;
+}
+
+/**
+ * Null where the fit is so uncertain or extreme that a price is no longer a whole number that can be told.
+ *
+ * @param besides intervals to price besides those the advice weighs.
+ */
+function price(
+  { basis, clock, current, maskedAge, positions, supportedAge }: PriceInput,
+  costs: Costs,
+  besides: readonly (number | null)[],
+): { schedule: Priced; changeTo: (interval: number | null) => Change | null } | null {
+  const { fit, policy, unitsAYear } = basis;
   const draws = drawsOf(fit);
   if (draws === null) return null;
-  const renewal = renewalPolicy(policy, costs, lives);
+  const renewal = renewalPolicy(basis, costs);
   const exact = renewal(fit).bestInterval();
-  const interval = exact === null ? null : keptInterval(exact, lives.supportedAge, clock);
-  const beyondData = exact !== null && exact > (lives.supportedAge ?? 0);
+  const interval = exact === null ? null : keptInterval(exact, supportedAge, clock);
+  const beyondData = exact !== null && exact > (supportedAge ?? 0);
   const trial = trialInterval(maskedAge, current.interval, clock);
   const beyond =
     exact !== null && beyondData && current.interval !== null && maskedAge !== null
@@ -109,10 +168,10 @@ function price(input: ScheduleInput, fit: PowerLawFit, policy: Policy, costs: Co
       : null;
 
   const question = { policy: renewal, currentInterval: current.interval, fit, draws };
-  const asked = [null, interval, trial, beyond].filter((one, index) => index === 0 || one !== null);
-  const value = scheduleValue(question, asked);
-  const perYear = unitsAYear * input.positions;
-  const dearer = renewalPolicy(policy, { ...costs, failure: 2 * costs.failure }, lives)(fit);
+  const weighed = [null, interval, trial, beyond].filter((one, index) => index === 0 || one !== null);
+  const value = scheduleValue(question, [...weighed, ...besides.filter((one) => !weighed.includes(one))]);
+  const perYear = unitsAYear * positions;
+  const dearer = renewalPolicy(basis, { ...costs, failure: 2 * costs.failure })(fit);
   const changeTo = (one: number | null): Change | null => {
     const found = value.alternatives.find((alternative) => alternative.interval === one);
     if (found === undefined) return null;
@@ -125,7 +184,8 @@ function price(input: ScheduleInput, fit: PowerLawFit, policy: Policy, costs: Co
     };
   };
   const stop = changeTo(null)!;
-  const curve = costCurve(curveIntervals(exact, fit, input), {
+  const reach = Math.max(curveReach(exact, basis, supportedAge), 1.5 * (current.interval ?? 0));
+  const curve = costCurve(curveIntervals(Math.max(reach, ...besides.map((one) => 1.2 * (one ?? 0)))), {
     policy: renewal,
     fit,
     draws: draws.slice(0, curveDraws),
@@ -134,7 +194,6 @@ function price(input: ScheduleInput, fit: PowerLawFit, policy: Policy, costs: Co
     kind: 'priced',
     policy,
     costs: { plannedMinor: costs.planned, failureMinor: costs.failure },
-    unitsAYear,
     best: {
       exact,
       interval,
@@ -155,10 +214,11 @@ function price(input: ScheduleInput, fit: PowerLawFit, policy: Policy, costs: Co
       high: Math.round(Math.max(point.upper, point.costRate) * perYear),
     })),
   };
-  return isTellable(result) ? result : null;
+  const tried = besides.map(changeTo);
+  return isTellable(result, tried) ? { schedule: result, changeTo } : null;
 }
 
-function drawsOf(fit: PowerLawFit): Weibull[] | null {
+function drawsOf(fit: UncertainWeibull): Weibull[] | null {
   try {
     return weibullDraws(fit);
   } catch (error) {
@@ -167,10 +227,10 @@ function drawsOf(fit: PowerLawFit): Weibull[] | null {
   }
 }
 
-function renewalPolicy(policy: Policy, costs: Costs, lives: LifeSummary): RenewalPolicy {
+function renewalPolicy({ policy, exposureByAge }: PriceBasis, costs: Costs): RenewalPolicy {
   switch (policy) {
     case 'minimal-repair':
-      return minimalRepairPolicy(costs, (life) => hazardAtWatchedAges(lives, life));
+      return minimalRepairPolicy(costs, (life) => hazardAtWatchedAges(exposureByAge, life));
     case 'block-replacement':
       return blockReplacementPolicy(costs);
     case 'age-replacement':
@@ -185,14 +245,15 @@ function keptInterval(exact: number, supportedAge: number | null, clock: ClockKi
   return longest === null ? null : Math.min(practicableInterval(exact, clock), longest);
 }
 
-/** Evenly spaced, far enough to show today's interval, the best one and where the curve levels out. */
-function curveIntervals(exact: number | null, fit: Weibull, input: ScheduleInput): number[] {
-  const { current, lives } = input;
+/** Far enough to show the best interval and where the curve levels out. */
+function curveReach(exact: number | null, { fit }: PriceBasis, supportedAge: number | null): number {
+  if (exact !== null) return 2 * exact;
   const meanLife = weibullMeanLife(fit);
-  const typical = Number.isFinite(meanLife) ? meanLife : (lives.supportedAge ?? fit.scale);
-  const reach = Math.max(exact === null ? 1.5 * typical : 2 * exact, 1.5 * (current.interval ?? 0));
-  return Array.from({ length: curvePoints }, (_, index) => ((index + 1) / curvePoints) * reach);
+  return 1.5 * (Number.isFinite(meanLife) ? meanLife : (supportedAge ?? fit.scale));
 }
+
+const curveIntervals = (reach: number): number[] =>
+  Array.from({ length: curvePoints }, (_, index) => ((index + 1) / curvePoints) * reach);
 
 function moneyAYear(priced: PricedInterval, perYear: number): Pick<Change, 'costPerYear' | 'savingPerYear'> {
   const money = (value: number, range: PricedInterval['costRange']) => ({
@@ -217,10 +278,10 @@ function breakEven(failure: number, saving: number, savingAtTwice: number): numb
 }
 
 /** Whether every number can be told: finite, and money exact to the minor unit. */
-function isTellable({ best, today, changes, curve }: Priced): boolean {
+function isTellable({ best, today, changes, curve }: Priced, tried: readonly (Change | null)[]): boolean {
   const money = [
     today,
-    ...[changes.best, changes.stop, changes.trial, changes.bestBeyondData].flatMap((change) =>
+    ...[changes.best, changes.stop, changes.trial, changes.bestBeyondData, ...tried].flatMap((change) =>
       change === null ? [] : [change.costPerYear, change.savingPerYear],
     ),
     ...curve.map(({ cost, low, high }) => ({ value: cost, low, high })),

@@ -44,7 +44,23 @@ const failureFinding = z.object({
 });
 export type FailureFinding = z.infer<typeof failureFinding>;
 
+/** What a price rests on besides the costs: enough to price any interval at any costs again, to the digit. */
+const basis = z.object({
+  policy: z.enum(policies),
+  /** Clock units a year and position. */
+  unitsAYear: z.number().positive(),
+  fit: z.object({
+    shape: z.number(),
+    scale: z.number(),
+    covariance: z.object({ lnShape: z.number(), lnScale: z.number(), cross: z.number() }),
+  }),
+  exposureByAge: z.array(z.object({ from: z.number(), to: z.number(), exposure: z.number() })),
+});
+export type PriceBasis = z.infer<typeof basis>;
+
 const always = {
+  /** Null without a life shape that can be drawn from. */
+  basis: basis.nullable(),
   current: z.object({ interval: z.number().positive().nullable(), task: z.string().nullable() }),
   positions: z.number().int().min(0),
   /** Longest age that at least 5 lives were seen to reach; no interval beyond it is advised for the class. */
@@ -66,8 +82,6 @@ export const scheduleFindingsSchema = z.discriminatedUnion('kind', [
     policy: z.enum(policies),
     /** Of one renewal in this policy and of one failure. */
     costs: z.object({ plannedMinor: z.number().int(), failureMinor: z.number().int() }),
-    /** Clock units a year and position. */
-    unitsAYear: z.number().positive(),
     best: z.object({
       /** Of the fit, to the digit; null where no planned renewal is cheapest. */
       exact: z.number().positive().nullable(),

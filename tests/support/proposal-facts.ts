@@ -26,6 +26,13 @@ export interface ScheduleCase {
   readonly changes?: Partial<PricedSchedule['changes']>;
 }
 
+const basis = {
+  policy: 'age-replacement',
+  unitsAYear: 365.25,
+  fit: { shape: 2.6, scale: 400, covariance: { lnShape: 0.01, lnScale: 0.003, cross: 0.001 } },
+  exposureByAge: [{ from: 0, to: 900, exposure: 9000 }],
+} satisfies ScheduleFindings['basis'];
+
 /** Seals renewed every year today and best every 5 months, with what differs. */
 export function priced({
   today = 365,
@@ -37,13 +44,13 @@ export function priced({
   const best = given.best === undefined ? (exact === null ? null : 5 * month) : given.best;
   return {
     kind: 'priced',
+    basis,
     current: { interval: today, task: today === null ? null : 'Seal replacement' },
     positions: 30,
     supportedAge: given.supportedAge === undefined ? 900 : given.supportedAge,
     failureFinding: null,
     policy: 'age-replacement',
     costs: { plannedMinor: 18_000, failureMinor: 190_000 },
-    unitsAYear: 365.25,
     best: { exact, interval: best, beyondData: given.beyondData ?? false, range: { low: 130, high: 180 } },
     today: { value: 750_000, low: 600_000, high: 900_000 },
     changes: {
@@ -77,6 +84,7 @@ export function facts(differences: Partial<ProposalFacts> = {}): ProposalFacts {
 export const withoutCosts = (today: number | null): ScheduleFindings => ({
   kind: 'costs-missing',
   missing: ['planned', 'failure'],
+  basis,
   current: { interval: today, task: null },
   positions: 30,
   supportedAge: 900,

@@ -8,7 +8,7 @@ import {
   intervalWords,
   practicableInterval,
 } from '~/advice/practicable-interval';
-import { priceSchedule, type ScheduleInput } from '~/advice/price-schedule';
+import { priceSchedule, tryInterval, type ScheduleInput } from '~/advice/price-schedule';
 import { scheduleFindingsSchema, type PricedSchedule } from '~/advice/schedule-findings';
 import { ageReplacementCostRate, bestAgeReplacement } from '~/reliability/age-replacement';
 import { blockReplacementCostRate } from '~/reliability/block-replacement';
@@ -101,9 +101,11 @@ describe('the price of a schedule', () => {
     expect(findings.today.value).toBe(Math.round(rate * 365.25 * 30));
     // At the fit, the failures expected at the ages under watch are those seen.
     const exposure = usual.lives.exposureByAge.reduce((sum, band) => sum + band.exposure, 0);
-    expect(hazardAtWatchedAges(usual.lives, usual.fit) / (usual.fit.failures / exposure)).toBeCloseTo(1, 1);
+    expect(
+      hazardAtWatchedAges(usual.lives.exposureByAge, usual.fit) / (usual.fit.failures / exposure),
+    ).toBeCloseTo(1, 1);
     expect(findings.changes.stop.costPerYear.value).toBe(
-      Math.round(hazardAtWatchedAges(usual.lives, usual.fit) * 145_000 * 365.25 * 30),
+      Math.round(hazardAtWatchedAges(usual.lives.exposureByAge, usual.fit) * 145_000 * 365.25 * 30),
     );
   });
 
@@ -267,4 +269,60 @@ it('tells finite numbers or says why not, for any valid input', () => {
     }),
     { numRuns: 50 },
   );
+});
+
+describe('trying a number', () => {
+  const costs = { plannedMinor: 18_000, failureMinor: 145_000 };
+  const kinds = {
+    'by age': {},
+    patched: { patchedShare: 0.8 },
+    'in groups': { isGroup: true },
+  } satisfies Record<string, Partial<ScheduleInput>>;
+
+  for (const [name, differences] of Object.entries(kinds)) {
+    it(`gives the night's own answer for the night's own numbers, ${name}`, () => {
+      const night = priced(differences);
+      const best = tryInterval(night, { interval: night.best.interval, ...costs }, 'calendar-days')!;
+      expect(best.change).toEqual(night.changes.best);
+      expect(best.schedule).toEqual({ ...night, changes: { ...night.changes, trial: null } });
+      const stop = tryInterval(night, { interval: null, ...costs }, 'calendar-days')!;
+      expect(stop.change).toEqual(night.changes.stop);
+    });
+  }
+
+  it("changes nothing at today's interval, and prices any other at other costs", () => {
+    const night = priced();
+    const today = tryInterval(night, { interval: 730, ...costs }, 'calendar-days')!;
+    expect(today.change).toMatchObject({ savingPerYear: { value: 0, low: 0, high: 0 }, share: 0 });
+    const other = tryInterval(
+      night,
+      { interval: 411, plannedMinor: 500, failureMinor: 9_000 },
+      'calendar-days',
+    )!;
+    const rate = ageReplacementCostRate(411, usual.fit, { planned: 500, failure: 9_000 });
+    expect(other.change.costPerYear.value).toBe(Math.round(rate * 365.25 * 30));
+    expect(other.schedule.costs).toEqual({ plannedMinor: 500, failureMinor: 9_000 });
+  });
+
+  it('draws the curve beyond whatever is tried', () => {
+    const far = tryInterval(priced(), { interval: 9000, ...costs }, 'calendar-days')!;
+    expect(far.schedule.curve.at(-1)!.interval).toBeGreaterThan(9000);
+  });
+
+  it('prices a class whose costs nobody has given', () => {
+    const night = priceSchedule({
+      ...usual,
+      costs: { plannedMinor: null, failureMinor: null, groupPlannedMinor: null },
+    });
+    expect(night.kind).toBe('costs-missing');
+    expect(tryInterval(night, { interval: 411, ...costs }, 'calendar-days')?.change.share).toBeGreaterThan(0);
+  });
+
+  it('gives no price where there is no life shape', () => {
+    const night = priceSchedule({
+      ...usual,
+      fit: { kind: 'cannot-be-estimated', reason: { code: 'no-failures' } },
+    });
+    expect(tryInterval(night, { interval: 365, ...costs }, 'calendar-days')).toBeNull();
+  });
 });
