@@ -12,11 +12,14 @@ import {
 import { listClassIds, readRecordsOfClasses, type ClassRecords } from '~/models/class-records.server';
 import { layOutClass } from '~/models/lay-out-class';
 import { loadAlarmStates } from '~/models/alarms.server';
+import { readFollowedChanges, saveFollowUps } from '~/models/change-follow-ups.server';
 import type { Organisation } from '~/models/organisation.server';
 import { failRun, recordProblem, startRun } from '~/models/job-runs.server';
 import { withJobLock } from '~/models/job-lock.server';
 import type { Database } from '../db/connection';
+import type { FollowUp } from '~/advice/follow-up';
 import { settleAlarms } from './nightly-alarms';
+import { followUpsOf } from './nightly-follow-ups';
 
 export const nightlyJob = 'nightly';
 
@@ -77,6 +80,7 @@ interface ComputedClass {
   marks: ClassMarks;
   tests: RunTests;
   alarmState: AlarmState;
+  followUps: { changeId: string; followUp: FollowUp }[];
 }
 
 /** Classes read together: few enough that memory stays flat, enough that the way to the database does not count. */
@@ -103,6 +107,7 @@ async function assessAll(
   let problems = 0;
   const { timeZone, currency, serviceLevel } = organisation;
   const alarmStates = await loadAlarmStates(snapshot);
+  const followed = await readFollowedChanges(snapshot, run.asOf);
   for await (const records of classRecords(snapshot, { timeZone, asOf: run.asOf })) {
     const classId = records.assetClass.id;
     try {
@@ -113,8 +118,9 @@ async function assessAll(
       const marks = marksOf(evidence);
       const tests = runTestsOf(findings);
       const conclusion = conclude(findings, { marks, currency }, allHold(tests));
+      const followUps = followUpsOf(evidence, followed.get(classId) ?? []);
       await insertAssessment(db, run, classId, { findings, conclusion });
-      computed.push({ classId, marks, tests, alarmState });
+      computed.push({ classId, marks, tests, alarmState, followUps });
     } catch (error) {
       problems += 1;
       const reason = reasonOf(error);
@@ -143,6 +149,11 @@ async function settleRun(
   await db.transaction(async (transaction) => {
     await finishRun(transaction, run.runId, run.asOf);
     await settleAlarms(transaction, run, computed);
+    await saveFollowUps(
+      transaction,
+      run.asOf,
+      computed.flatMap(({ followUps }) => followUps),
+    );
   });
 }
 

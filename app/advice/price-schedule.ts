@@ -88,7 +88,10 @@ export function priceSchedule(input: ScheduleInput): ScheduleFindings {
     ];
     return { kind: 'costs-missing', missing, ...always };
   }
-  const priced = basis === null ? null : price({ ...input, basis, supportedAge: lives.supportedAge }, { planned, failure }, []);
+  const priced =
+    basis === null
+      ? null
+      : price({ ...input, basis, supportedAge: lives.supportedAge }, { planned, failure }, []);
   return priced === null
     ? { kind: 'no-fit', reason: 'out-of-range', ...always }
     : { ...priced.schedule, ...always };

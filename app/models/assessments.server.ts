@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import { conclusionSchema, type Conclusion } from '~/advice/conclusion';
 import { findingsSchema, type Findings } from '~/advice/findings';
+import type { Verdict } from '~/advice/verdict';
 import type { Database } from '../../db/connection';
 import { summarise } from './assessment-summary';
 
@@ -111,4 +112,13 @@ export async function currentAssessment(db: Database, classId: string): Promise<
   const row = rows[0];
   if (row === undefined) return null;
   return { id: row.id, classId, asOf: row.asOf, ...detailSchema.parse(row.detail) };
+}
+
+/** What a class is called today; null before the first night. */
+export async function currentVerdict(db: Database, classId: string): Promise<Verdict | null> {
+  const { rows } = await db.raw<{ rows: { verdict: Verdict }[] }>(
+    `select a.verdict from asset_classes c join assessments a on a.id = c.current_assessment_id where c.id = ?`,
+    [classId],
+  );
+  return rows[0]?.verdict ?? null;
 }

@@ -231,14 +231,18 @@ async function readModes(db: Database, classIds: string[]): Promise<OfClass<{ id
   return rows;
 }
 
-/** One a class at most: where several are in force, the one that comes round most often is what ends lives. */
+/**
+ * One a class at most: where several are in force, the one that comes round most often is what ends lives. A trial on a
+ * part of the class is not the class's schedule.
+ */
 async function readRenewalTasks(db: Database, classIds: string[], asOf: string): Promise<OfClass<TaskRow>[]> {
   const { rows } = await db.raw<{ rows: OfClass<TaskRow>[] }>(
     `select distinct on (class_id) class_id as "classId", name,
             interval_days as "intervalDays", interval_hours as "intervalHours"
-       from maintenance_tasks
+       from maintenance_tasks t
       where class_id = any(:classIds) and kind in ('replace', 'restore')
         and starts_on <= :asOf and (ends_on is null or ends_on > :asOf)
+        and not exists (select from maintenance_task_assets a where a.task_id = t.id)
       order by class_id, coalesce(interval_days, interval_hours / 24), id`,
     { classIds, asOf },
   );

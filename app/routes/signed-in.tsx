@@ -14,6 +14,7 @@ import type { Route } from './+types/signed-in';
 const sections: readonly { to: string; label: string; roles: readonly Role[] }[] = [
   { to: href('/classes'), label: 'Classes', roles: ['technician', 'lead', 'manager', 'admin'] },
   { to: href('/log'), label: 'Log a failure', roles: ['technician', 'lead'] },
+  { to: href('/changes'), label: 'Changes', roles: ['lead', 'manager', 'admin'] },
   { to: href('/imports'), label: 'Imports', roles: ['lead', 'admin'] },
   { to: href('/nights'), label: 'Nights', roles: ['lead', 'admin'] },
 ];
