@@ -6,6 +6,7 @@ export default [
   route('sign-out', 'routes/sign-out.tsx'),
   route('theme', 'routes/theme.tsx'),
   layout('routes/signed-in.tsx', [
+    route('since', 'routes/since.tsx'),
     route('classes', 'routes/classes.tsx'),
     route('classes/:classId', 'routes/class.tsx'),
     route('classes/:classId/settings', 'routes/class-settings.tsx'),

@@ -11,8 +11,9 @@ import {
 } from '~/models/assessments.server';
 import { listClassIds, readRecordsOfClasses, type ClassRecords } from '~/models/class-records.server';
 import { layOutClass } from '~/models/lay-out-class';
-import { loadAlarmStates } from '~/models/alarms.server';
+import { laterNightSettled, loadAlarmStates } from '~/models/alarms.server';
 import { readFollowedChanges, saveFollowUps } from '~/models/change-follow-ups.server';
+import { readChangedClasses } from '~/models/class-news.server';
 import type { Organisation } from '~/models/organisation.server';
 import { failRun, recordProblem, startRun } from '~/models/job-runs.server';
 import { withJobLock } from '~/models/job-lock.server';
@@ -20,6 +21,7 @@ import type { Database } from '../db/connection';
 import type { FollowUp } from '~/advice/follow-up';
 import { settleAlarms } from './nightly-alarms';
 import { followUpsOf } from './nightly-follow-ups';
+import { settleNews } from './nightly-news';
 
 export const nightlyJob = 'nightly';
 
@@ -136,7 +138,7 @@ async function settleRun(
   db: Database,
   run: Run,
   computed: readonly ComputedClass[],
-  { organisation: { currency } }: NightlyOptions,
+  { organisation: { currency, timeZone } }: NightlyOptions,
 ): Promise<void> {
   const decisions = decideRun(computed.map(({ tests }) => tests));
   for (const [index, { classId, marks }] of computed.entries()) {
@@ -147,13 +149,17 @@ async function settleRun(
     );
   }
   await db.transaction(async (transaction) => {
+    const isNewest = !(await laterNightSettled(transaction, run.asOf));
+    const changed = isNewest ? await readChangedClasses(transaction, run, timeZone) : [];
     await finishRun(transaction, run.runId, run.asOf);
-    await settleAlarms(transaction, run, computed);
-    await saveFollowUps(
+    if (!isNewest) return;
+    const raised = await settleAlarms(transaction, run, computed);
+    const followUps = await saveFollowUps(
       transaction,
       run.asOf,
-      computed.flatMap(({ followUps }) => followUps),
+      computed.flatMap((one) => one.followUps),
     );
+    await settleNews(transaction, run.asOf, { changed, raised, followUps });
   });
 }
 

@@ -1,5 +1,7 @@
 import { z } from 'zod';
+import type { Conclusion } from '~/advice/conclusion';
 import type { Findings } from '~/advice/findings';
+import { actions } from '~/advice/proposal';
 
 const openInterval = z.object({ low: z.number().nullable(), high: z.number().nullable() });
 
@@ -14,10 +16,16 @@ export const assessmentSummarySchema = z.object({
   meanTimeInterval: openInterval,
   slope: z.number().nullable(),
   slopeInterval: openInterval,
+  action: z.enum(actions),
+  /** Integer minor units; null where nothing is to be saved, or nobody can say. */
+  savingPerYearMinor: z.number().int().nullable(),
 });
 export type AssessmentSummary = z.infer<typeof assessmentSummarySchema>;
 
-export function summarise({ clock, extent, rate, trend }: Findings): AssessmentSummary {
+export function summarise(
+  { clock, extent, rate, trend }: Findings,
+  { proposal }: Conclusion,
+): AssessmentSummary {
   const { slope } = trend;
   return {
     clock,
@@ -29,5 +37,7 @@ export function summarise({ clock, extent, rate, trend }: Findings): AssessmentS
     meanTimeInterval: rate.overall.meanTimeInterval,
     slope: slope.kind === 'fit' ? slope.shape : null,
     slopeInterval: slope.kind === 'fit' ? slope.shapeInterval : { low: null, high: null },
+    action: proposal.action,
+    savingPerYearMinor: proposal.savingPerYearMinor?.value ?? null,
   };
 }

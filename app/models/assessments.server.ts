@@ -61,7 +61,7 @@ function columnsOf(findings: Findings, conclusion: Conclusion) {
     verdict: conclusion.verdict,
     trend: conclusion.trend,
     cautionCodes: conclusion.cautions.map(({ code }) => code),
-    summary: JSON.stringify(summarise(findings)),
+    summary: JSON.stringify(summarise(findings, conclusion)),
     detail: JSON.stringify({ findings, conclusion }),
   };
 }

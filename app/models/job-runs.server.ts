@@ -105,3 +105,23 @@ export async function currentProblem(db: Database, classId: string): Promise<str
   );
   return rows[0]?.reason ?? null;
 }
+
+export interface LastNight {
+  asOf: string;
+  finishedAt: Date | null;
+  classes: number;
+  /** Classes it could not compute. */
+  problems: number;
+}
+
+/** The night that is in force; null before the first. */
+export async function lastNight(db: Database): Promise<LastNight | null> {
+  const { rows } = await db.raw<{ rows: LastNight[] }>(
+    `select r.as_of as "asOf", r.finished_at as "finishedAt", r.classes_computed as classes,
+            (select count(*) from job_run_problems p where p.run_id = r.id) as problems
+       from job_runs r
+      where r.job = 'nightly' and r.state = 'finished'
+      order by r.as_of desc, r.finished_at desc limit 1`,
+  );
+  return rows[0] ?? null;
+}

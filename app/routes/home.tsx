@@ -9,7 +9,7 @@ export function loader({ context, request }: Route.LoaderArgs) {
 
 /** Where a person's work begins: a desk role outweighs the plant room, and the plant room the set-up. */
 function firstPage(roles: readonly Role[]): string {
-  if (roles.includes('lead') || roles.includes('manager')) return href('/classes');
+  if (roles.includes('lead') || roles.includes('manager')) return href('/since');
   if (roles.includes('technician')) return href('/log');
   if (roles.includes('admin')) return href('/imports');
   throw new Response(

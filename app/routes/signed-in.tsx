@@ -12,6 +12,7 @@ import type { Route } from './+types/signed-in';
 
 /** The main sections and who finds them in the navigation. What a person may do there is each route's to decide. */
 const sections: readonly { to: string; label: string; roles: readonly Role[] }[] = [
+  { to: href('/since'), label: 'What is new', roles: ['lead', 'manager'] },
   { to: href('/classes'), label: 'Classes', roles: ['technician', 'lead', 'manager', 'admin'] },
   { to: href('/log'), label: 'Log a failure', roles: ['technician', 'lead'] },
   { to: href('/changes'), label: 'Changes', roles: ['lead', 'manager', 'admin'] },

@@ -29,6 +29,7 @@ export const permissions: Readonly<Record<string, Permission>> = {
   'routes/theme.tsx': { see: all, act: { any: all } },
   'routes/not-found.tsx': {},
   'routes/signed-in.tsx': { see: signedIn },
+  'routes/since.tsx': { see: ['lead', 'manager'], act: { any: ['lead', 'manager'] } },
   'routes/classes.tsx': { see: signedIn },
   'routes/class.tsx': { see: ofTheSite },
   'routes/class-settings.tsx': { see: keepers, act: { any: keepers } },
