@@ -1,4 +1,4 @@
-import type { DateTime } from 'luxon';
+import { DateTime } from 'luxon';
 
 /** The last day that is over at a moment, in that moment's zone: 'YYYY-MM-DD'. */
 export function lastCompleteDay(moment: DateTime): string {
@@ -13,4 +13,21 @@ export function lastCompleteDay(moment: DateTime): string {
  */
 export function nightIsDue(lastFinished: string | null, moment: DateTime): boolean {
   return lastFinished === null || lastFinished < lastCompleteDay(moment);
+}
+
+/** Days before the last one as of which a demo's past is assessed first, so that it has one. */
+const demoNights = [720, 540, 360, 240, 150, 90, 60, 30, 14, 7, 1];
+
+/**
+ * The nights to run, the oldest first: the last complete day's, and in a demo that has no night yet some of its past.
+ *
+ * @param hasNights whether any night has ever finished
+ */
+export function nightsToCatchUp(
+  lastDay: string,
+  { demo, hasNights }: { demo: boolean; hasNights: boolean },
+): string[] {
+  if (!demo || hasNights) return [lastDay];
+  const day = DateTime.fromISO(lastDay, { zone: 'utc' });
+  return [...demoNights.map((days) => day.minus({ days }).toISODate() ?? lastDay), lastDay];
 }

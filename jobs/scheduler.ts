@@ -4,7 +4,7 @@ import { lastFinishedDay } from '~/models/job-runs.server';
 import { readOrganisation } from '~/models/organisation.server';
 import { openDatabase } from '../db/connection';
 import { nightlyJob, runNightly } from './nightly';
-import { lastCompleteDay, nightIsDue } from './nights-due';
+import { lastCompleteDay, nightIsDue, nightsToCatchUp } from './nights-due';
 
 /** After midnight, when the day before is over, and away from the hour that clock changes repeat or skip. */
 const everyNight = '30 3 * * *';
@@ -12,8 +12,7 @@ const everyNight = '30 3 * * *';
 const db = openDatabase();
 const { timeZone } = await readOrganisation(db);
 
-async function nightly(): Promise<void> {
-  const asOf = lastCompleteDay(DateTime.now().setZone(timeZone));
+async function nightly(asOf = lastCompleteDay(DateTime.now().setZone(timeZone))): Promise<void> {
   try {
     const outcome = await runNightly(db, {
       asOf,
@@ -30,13 +29,21 @@ async function nightly(): Promise<void> {
   }
 }
 
-const task = cron.schedule(everyNight, nightly, { timezone: timeZone, noOverlap: true });
+const task = cron.schedule(everyNight, () => nightly(), { timezone: timeZone, noOverlap: true });
 console.log(`Nightly assessment at 03:30, ${timeZone}.`);
 
+async function catchUp(lastFinished: string | null): Promise<void> {
+  const lastDay = lastCompleteDay(DateTime.now().setZone(timeZone));
+  const demo = process.env.INTERVALE_DEMO === '1';
+  for (const asOf of nightsToCatchUp(lastDay, { demo, hasNights: lastFinished !== null }))
+    await nightly(asOf);
+}
+
 let working: Promise<void> = Promise.resolve();
-if (nightIsDue(await lastFinishedDay(db, nightlyJob), DateTime.now().setZone(timeZone))) {
+const lastFinished = await lastFinishedDay(db, nightlyJob);
+if (nightIsDue(lastFinished, DateTime.now().setZone(timeZone))) {
   console.log('A night is missing; catching up now.');
-  working = nightly();
+  working = catchUp(lastFinished);
 }
 
 async function stop(): Promise<void> {

@@ -1,6 +1,6 @@
 import { DateTime } from 'luxon';
 import { describe, expect, it } from 'vitest';
-import { lastCompleteDay, nightIsDue } from '../../../jobs/nights-due';
+import { lastCompleteDay, nightIsDue, nightsToCatchUp } from '../../../jobs/nights-due';
 
 const at = (instant: string, zone: string) => DateTime.fromISO(instant, { zone: 'utc' }).setZone(zone);
 
@@ -30,5 +30,20 @@ describe('a night is due', () => {
 
   it('not once the last complete day has been assessed', () => {
     expect(nightIsDue('2026-06-29', morning)).toBe(false);
+  });
+});
+
+describe('the nights to catch up', () => {
+  it('are the last one alone, which makes up for all before', () => {
+    expect(nightsToCatchUp('2026-06-29', { demo: false, hasNights: false })).toEqual(['2026-06-29']);
+    expect(nightsToCatchUp('2026-06-29', { demo: true, hasNights: true })).toEqual(['2026-06-29']);
+  });
+
+  it('give a new demo a past, the oldest first and the last complete day at the end', () => {
+    const nights = nightsToCatchUp('2026-06-29', { demo: true, hasNights: false });
+    expect(nights).toEqual([...nights].sort());
+    expect(nights[0]).toBe('2024-07-09');
+    expect(nights.at(-2)).toBe('2026-06-28');
+    expect(nights.at(-1)).toBe('2026-06-29');
   });
 });
