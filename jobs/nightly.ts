@@ -1,4 +1,11 @@
-import { conclude, decideRun, runTestsOf, type RunDecisions, type RunTests } from '~/advice/conclude';
+import {
+  allHold,
+  conclude,
+  decideRun,
+  runTestsOf,
+  type RunDecisions,
+  type RunTests,
+} from '~/advice/conclude';
 import { computeFindings } from '~/advice/compute-findings';
 import { advanceAlarmState } from '~/advice/advance-alarm-state';
 import type { AlarmState } from '~/advice/alarm-findings';
@@ -37,11 +44,6 @@ interface NightlyOptions {
   organisation: Pick<Organisation, 'timeZone' | 'currency' | 'serviceLevel'>;
   /** Told about each class that could not be computed. */
   onProblem?: (classId: string, reason: string) => void;
-}
-
-/** Judged as if every test held up: most classes are not touched by what the others show. */
-function allHold({ pWearOutOfModes }: RunTests): RunDecisions {
-  return { wearOutPasses: true, laplacePasses: true, modesWearOutPass: pWearOutOfModes.map(() => true) };
 }
 
 /**

@@ -67,6 +67,11 @@ function passing(pValues: readonly (number | null)[]): boolean[] {
   return pValues.map((p) => (p === null ? false : (passes.next().value ?? false)));
 }
 
+/** Judged as if every test held up among all classes: most are not touched by what the others show. */
+export function allHold({ pWearOutOfModes }: RunTests): RunDecisions {
+  return { wearOutPasses: true, laplacePasses: true, modesWearOutPass: pWearOutOfModes.map(() => true) };
+}
+
 /** Judges one class: verdict, trend, words, cautions and proposal from its findings and the run's decisions. */
 export function conclude(
   findings: Findings,

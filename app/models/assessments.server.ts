@@ -122,3 +122,12 @@ export async function currentVerdict(db: Database, classId: string): Promise<Ver
   );
   return rows[0]?.verdict ?? null;
 }
+
+/** The day of the assessment in force; null before the first night. */
+export async function currentAsOf(db: Database, classId: string): Promise<string | null> {
+  const { rows } = await db.raw<{ rows: { asOf: string }[] }>(
+    `select a.as_of as "asOf" from asset_classes c join assessments a on a.id = c.current_assessment_id where c.id = ?`,
+    [classId],
+  );
+  return rows[0]?.asOf ?? null;
+}

@@ -22,17 +22,27 @@ export class ModeChangedError extends Error {
   }
 }
 
-/** The modes of a class, those that happen most often first. */
+/** The modes of a class that failures are logged with, those that happen most often first. */
 export async function listFailureModes(db: Database, classId: string): Promise<FailureMode[]> {
   return db('failure_modes')
     .leftJoin('failures', (join) =>
       join.on('failures.mode_id', 'failure_modes.id').andOnNull('failures.voided_at'),
     )
     .where('failure_modes.class_id', classId)
+    .whereNull('failure_modes.merged_into')
     .groupBy('failure_modes.id')
     .orderByRaw('count(failures.id) desc, lower(failure_modes.name)')
     .select<FailureMode[]>('failure_modes.id', 'failure_modes.name')
     .count({ failures: 'failures.id' });
+}
+
+/** What a class's modes are called, merged ones too, by id. */
+export async function listModeNames(db: Database, classId: string): Promise<Record<string, string>> {
+  const rows = (await db('failure_modes').where('class_id', classId).select('id', 'name')) as {
+    id: string;
+    name: string;
+  }[];
+  return Object.fromEntries(rows.map(({ id, name }) => [id, name]));
 }
 
 /** @throws ModeNameTakenError */

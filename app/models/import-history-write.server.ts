@@ -58,7 +58,7 @@ async function addFailures(trx: Database, json: string | null, context: WriteCon
   await trx.raw(
     `insert into failures (id, asset_id, class_id, mode_id, failed_on, failed_at, effect, outside_cause, item_fitted_on,
                            note, logged_at, logged_by, import_id, source_key, updated_at)
-     select target.id, assets.id, assets.class_id, failure_modes.id, "on", at, effect, "outsideCause", "itemFittedOn",
+     select target.id, assets.id, assets.class_id, coalesce(failure_modes.merged_into, failure_modes.id), "on", at, effect, "outsideCause", "itemFittedOn",
             note, ${entered}, ?, ?, "sourceKey", ?
        from ${recordset} ${withMode}`,
     [now, personId, importId, now, json],
@@ -81,7 +81,7 @@ async function changeFailures(
               item_fitted_on = target."itemFittedOn",
               item_age = case when target."itemFittedOn" is null then item_age end,
               note = target.note, version = version + 1, updated_at = ?
-         from (select target.*, assets.class_id, failure_modes.id as mode_id
+         from (select target.*, assets.class_id, coalesce(failure_modes.merged_into, failure_modes.id) as mode_id
                  from ${recordset} ${withMode}) as target
         where failures.id = target.id
        returning failures.*

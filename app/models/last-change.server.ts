@@ -1,3 +1,4 @@
+import { z } from 'zod';
 import type { Database } from '../../db/connection';
 
 /** Who changed a record last, and when. */
@@ -25,4 +26,34 @@ export async function findLastChange(
       personName: 'people.name',
     });
   return change ?? null;
+}
+
+const changeSchema = z.object({
+  action: z.string(),
+  personName: z.string().nullable(),
+  at: z.date(),
+  before: z.record(z.string(), z.unknown()).nullable(),
+  after: z.record(z.string(), z.unknown()).nullable(),
+});
+/** One entry of the audit trail about a record. */
+export type RecordChange = z.output<typeof changeSchema>;
+
+/** All that was changed about one record, the latest first; that it was logged is left out. */
+export async function listChangesOf(
+  db: Database,
+  record: { subject: string; subjectId: string },
+): Promise<RecordChange[]> {
+  const rows: unknown[] = await db('audit_entries')
+    .leftJoin('people', 'people.id', 'audit_entries.person_id')
+    .where({ subject: record.subject, subject_id: record.subjectId })
+    .whereNot('action', 'log')
+    .orderBy('audit_entries.id', 'desc')
+    .select({
+      action: 'audit_entries.action',
+      at: 'audit_entries.at',
+      personName: 'people.name',
+      before: 'audit_entries.before',
+      after: 'audit_entries.after',
+    });
+  return rows.map((row) => changeSchema.parse(row));
 }

@@ -7,13 +7,16 @@ import { Button, LinkButton } from '~/components/button';
 import { ErrorSummary } from '~/components/error-summary';
 import { formatCalendarDate, formatDateTime } from '~/format/date';
 import { formatClock } from '~/format/number';
+import { RecordHistory } from '~/components/clean/record-history';
 import { changedMeanwhile } from '~/components/log/changed-meanwhile';
 import { refusalSentence } from '~/components/log/refusal-words';
 import { effectWords, outsideCauseWords, placeWords } from '~/components/log/words';
 import { Notice } from '~/components/notice';
 import { TextField } from '~/components/text-field';
+import { listModeNames } from '~/models/failure-modes.server';
 import { mayUndoFailure } from '~/models/failure-permissions';
 import { type Failure, findFailure, restoreFailure, voidFailure } from '~/models/failures.server';
+import { listChangesOf } from '~/models/last-change.server';
 import { now, today } from '~/services/clock.server';
 import { redirectWithToast } from '~/services/flash.server';
 import { organisation, requireRole, requireSite, requireViewer, type Viewer } from '~/services/viewer.server';
@@ -38,8 +41,16 @@ const formSchema = z.discriminatedUnion('intent', [
 export async function loader({ context, request, params }: Route.LoaderArgs) {
   const viewer = requireViewer(context, request);
   const failure = await failureAtOwnSite(viewer, params.failureId);
+  const db = database();
+  const [history, modes] = await Promise.all([
+    listChangesOf(db, { subject: 'failure', subjectId: failure.id }),
+    listModeNames(db, failure.classId),
+  ]);
   return {
     failure,
+    history,
+    modes,
+    mayCorrect: viewer.roles.includes('lead'),
     mayUndo: mayUndoFailure(failure, viewer, now()),
     mayLog: viewer.roles.some((role) => role === 'technician' || role === 'lead'),
     timeZone: organisation(context).timeZone,
@@ -103,7 +114,7 @@ export const meta: Route.MetaFunction = ({ loaderData }) => [
 ];
 
 export default function FailurePage({ loaderData, actionData }: Route.ComponentProps) {
-  const { failure, mayUndo, mayLog, timeZone } = loaderData;
+  const { failure, history, modes, mayUndo, mayLog, mayCorrect, timeZone } = loaderData;
   const isVoid = failure.voidedAt !== null;
   const [form] = useForm({ id: `undo-${failure.version}`, lastResult: actionData });
   const formErrors = (actionData?.error?.[''] ?? []).map((message) => ({ fieldId: null, message }));
@@ -126,6 +137,22 @@ export default function FailurePage({ loaderData, actionData }: Route.ComponentP
 
       <h2 className="mt-6">What is stored</h2>
       <StoredFailure failure={failure} timeZone={timeZone} />
+      <RecordHistory history={history} modes={modes} clock={failure.clock} timeZone={timeZone} />
+      {mayCorrect && (
+        <p className="mt-4">
+          <Link
+            to={`${href('/classes/:classId/clean', { classId: failure.classId })}?${new URLSearchParams({
+              tag: failure.tag,
+              from: failure.failedOn,
+              to: failure.failedOn,
+              voided: 'all',
+            })}`}
+            className="inline-flex min-h-11 items-center"
+          >
+            Correct this record
+          </Link>
+        </p>
+      )}
 
       {mayUndo && (
         <Form method="post" id={form.id} className="mt-6" key={failure.version}>

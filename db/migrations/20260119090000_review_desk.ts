@@ -30,6 +30,34 @@ export async function up(knex: Knex): Promise<void> {
     );
     create index class_news_seen_news on class_news_seen (news_id);
 
+    -- A mode merged into another keeps its name for what still calls it so; nothing new is logged with it.
+    alter table failure_modes add column merged_into uuid;
+    alter table failure_modes add constraint failure_modes_merged_into_fkey
+      foreign key (merged_into, class_id) references failure_modes (id, class_id);
+    alter table failure_modes add constraint failure_modes_not_into_itself check (merged_into <> id);
+    create index failure_modes_merged_into on failure_modes (merged_into) where merged_into is not null;
+
+    -- Corrections made together, so that they can be taken back together.
+    create table record_corrections (
+      id uuid primary key,
+      class_id uuid not null references asset_classes (id) on delete cascade,
+      person_id uuid not null references people (id),
+      at timestamptz not null default now(),
+      correction jsonb not null,
+      taken_back_at timestamptz
+    );
+    create index record_corrections_class on record_corrections (class_id, at desc);
+
+    create table record_correction_items (
+      correction_id uuid not null references record_corrections (id) on delete cascade,
+      failure_id uuid not null references failures (id),
+      -- The version the correction left: taking it back asks that nobody has changed the record since.
+      version integer not null,
+      before jsonb not null,
+      primary key (correction_id, failure_id)
+    );
+    create index record_correction_items_failure on record_correction_items (failure_id);
+
     alter table maintenance_tasks
       add column version integer not null default 1,
       -- The task this one took over from, so that a schedule's history can be read.
@@ -158,6 +186,9 @@ export async function down(knex: Knex): Promise<void> {
     drop table schedule_changes;
     drop function check_change_may_be_approved();
     drop table maintenance_task_assets;
+    drop table record_correction_items;
+    drop table record_corrections;
+    alter table failure_modes drop column merged_into;
     alter table maintenance_tasks drop column replaces_task_id, drop column version;
     drop table class_news_seen;
     drop table class_news;

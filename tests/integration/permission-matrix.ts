@@ -34,6 +34,16 @@ export const permissions: Readonly<Record<string, Permission>> = {
   'routes/class.tsx': { see: ofTheSite },
   'routes/class-settings.tsx': { see: keepers, act: { any: keepers } },
   'routes/class-records.tsx': { see: ofTheSite },
+  'routes/class-clean.tsx': {
+    see: ['lead'],
+    act: {
+      preview: ['lead'],
+      'preview-merge': ['lead'],
+      save: ['lead'],
+      'preview-again': ['lead'],
+      'take-back': ['lead'],
+    },
+  },
   'routes/class-change.tsx': { see: ['lead'], act: { any: ['lead'] } },
   'routes/changes.tsx': { see: deciders },
   'routes/change.tsx': {
