@@ -104,12 +104,13 @@ function Costs({ layout, data, idPrefix }: CostsProps) {
 
 type Usable = NonNullable<ReturnType<typeof usableCosts>>;
 
-function sentenceFor({ today, best, runToFailure }: Usable, data: CostByIntervalData): string {
+function sentenceFor({ today, best, tried, runToFailure }: Usable, data: CostByIntervalData): string {
   const priced = (word: string, cost: number, interval?: number) =>
     `${word}${interval === undefined ? '' : ` (${formatQuantity(interval, data.intervalUnit)})`} ${formatMoneyShort(cost, data.currency)}`;
   const parts = [
     ...(today === undefined ? [] : [priced("today's interval", today.cost, today.interval)]),
     ...(best === undefined ? [] : [priced('the best', best.cost, best.interval)]),
+    ...(tried === undefined ? [] : [priced('the one tried', tried.cost, tried.interval)]),
     ...(runToFailure === null ? [] : [priced('run to failure', runToFailure.cost)]),
   ];
   const supported =

@@ -30,6 +30,8 @@ export interface CostByIntervalData {
   readonly runToFailure: { readonly cost: number; readonly low?: number; readonly high?: number };
   readonly today?: CostPoint;
   readonly best?: CostPoint;
+  /** An interval somebody tries out. */
+  readonly tried?: CostPoint;
   /** Longest interval the records can speak of. */
   readonly supportedUntil?: number;
   /** ISO 4217. */
@@ -65,6 +67,7 @@ export function usableCosts(data: CostByIntervalData) {
     runToFailure,
     today: isPoint(data.today) ? data.today : undefined,
     best: isPoint(data.best) ? data.best : undefined,
+    tried: isPoint(data.tried) ? data.tried : undefined,
   };
 }
 
@@ -76,7 +79,7 @@ export function usableCosts(data: CostByIntervalData) {
 export function layoutCostByInterval(data: CostByIntervalData, size: ChartSize) {
   const usable = usableCosts(data);
   if (usable === null) return null;
-  const { curve, first, last, runToFailure, today, best } = usable;
+  const { curve, first, last, runToFailure, today, best, tried } = usable;
 
   const top = topCost(usable);
   const money = (value: number) => formatMoneyShort(value, data.currency);
@@ -85,8 +88,9 @@ export function layoutCostByInterval(data: CostByIntervalData, size: ChartSize) 
   const frame = plotFrame(size, 300, { top: 36, right: 12, bottom: 42, left });
   const { plot } = frame;
   const right = plot.x + plot.width;
-  const from = Math.min(first.interval, today?.interval ?? Infinity, best?.interval ?? Infinity);
-  const to = Math.max(last.interval, today?.interval ?? 0, best?.interval ?? 0);
+  const marked = [today, best, tried].filter((point) => point !== undefined);
+  const from = Math.min(first.interval, ...marked.map(({ interval }) => interval));
+  const to = Math.max(last.interval, ...marked.map(({ interval }) => interval));
   const xScale = scaleLinear<number>({ domain: [from, to], range: [plot.x, right] });
   const yScale = scaleLinear<number>({ domain: [0, top], range: [plot.y + plot.height, plot.y] });
   const at = (interval: number, cost: number): Point => ({
@@ -121,7 +125,7 @@ export function layoutCostByInterval(data: CostByIntervalData, size: ChartSize) 
         }
       : null;
 
-  const markers = markersOf(today, best).map((marker) => ({
+  const markers = markersOf(today, best, tried).map((marker) => ({
     ...marker,
     ...at(marker.interval, marker.cost),
   }));
@@ -192,25 +196,38 @@ export function layoutCostByInterval(data: CostByIntervalData, size: ChartSize) 
   };
 }
 
-function topCost({ curve, runToFailure, today, best }: NonNullable<ReturnType<typeof usableCosts>>): number {
+function topCost({
+  curve,
+  runToFailure,
+  today,
+  best,
+  tried,
+}: NonNullable<ReturnType<typeof usableCosts>>): number {
   const cheapest = Math.min(...curve.map(({ cost }) => cost));
   const dearest = Math.max(...curve.map(({ high }) => high));
-  const shown = Math.max(runToFailure?.cost ?? 0, today?.cost ?? 0, best?.cost ?? 0, 2 * cheapest);
+  const marked = [runToFailure, today, best, tried].map((point) => point?.cost ?? 0);
+  const shown = Math.max(...marked, 2 * cheapest);
   const withRange = Math.max(shown, Math.min(runToFailure?.range?.high ?? 0, 1.5 * shown));
   return 1.15 * Math.max(withRange, Math.min(dearest, 1.25 * withRange)) || 1;
 }
 
-/** Today and best, or both as one where they are the same interval. */
-function markersOf(today: CostPoint | undefined, best: CostPoint | undefined) {
-  const isSame =
-    today !== undefined &&
-    best !== undefined &&
-    Math.abs(today.interval - best.interval) <= 0.01 * best.interval;
-  if (isSame) return [{ word: 'today and best', ...today }];
-  return [
-    ...(best === undefined ? [] : [{ word: 'best', ...best }]),
-    ...(today === undefined ? [] : [{ word: 'today', ...today }]),
-  ];
+/** Today, the best and the one tried; those of one interval as one. */
+function markersOf(
+  today: CostPoint | undefined,
+  best: CostPoint | undefined,
+  tried: CostPoint | undefined,
+): (CostPoint & { word: string })[] {
+  const markers: (CostPoint & { word: string })[] = [];
+  const add = (word: string, point: CostPoint | undefined) => {
+    if (point === undefined) return;
+    const same = markers.find(({ interval }) => Math.abs(interval - point.interval) <= 0.01 * point.interval);
+    if (same === undefined) markers.push({ word, ...point });
+    else same.word = `${same.word} and ${word}`;
+  };
+  add('today', today);
+  add('best', best);
+  add('tried', tried);
+  return markers;
 }
 
 function spotsAround(x: number, y: number, left: number, right: number): LabelSpot[] {

@@ -2,60 +2,43 @@ import { formatCalendarDate } from '~/format/date';
 import type { Verdict } from '~/advice/verdict';
 import { plotFrame, tenth, textWidth, type ChartSize } from './plot-frame';
 
-export interface VerdictNight {
-  /** ISO calendar date. */
-  readonly date: string;
-  readonly verdict: Verdict;
-  /** Failures behind it. */
-  readonly n: number;
-}
-
-/** Nights on end with one verdict. */
+/** Nights on end with one verdict; ISO calendar dates. */
 export interface VerdictRun {
   readonly verdict: Verdict;
   readonly from: string;
   readonly to: string;
   readonly nights: number;
+  /** Failures behind the last of them. */
   readonly n: number;
+  /** What brought the verdict about, in a sentence; null where nobody noted it. */
+  readonly why: string | null;
 }
 
 export type VerdictHistoryLayout = NonNullable<ReturnType<typeof layoutVerdictHistory>>;
 
-const ISO_DATE = /^\d{4}-\d{2}-\d{2}$/;
-
-/** Nights in order, put together into runs of one verdict. */
-export function verdictRuns(nights: readonly VerdictNight[]): VerdictRun[] {
-  const runs: VerdictRun[] = [];
-  const ordered = nights
-    .filter(({ date }) => ISO_DATE.test(date))
-    .sort((a, b) => a.date.localeCompare(b.date));
-  for (const { date, verdict, n } of ordered) {
-    const open = runs.at(-1);
-    if (open?.verdict === verdict) runs[runs.length - 1] = { ...open, to: date, nights: open.nights + 1, n };
-    else runs.push({ verdict, from: date, to: date, nights: 1, n });
-  }
-  return runs;
-}
-
 const GLYPH_WIDTH = 32;
 
+const daysBetween = (from: string, to: string) => (Date.parse(to) - Date.parse(from)) / 86_400_000;
+
 /**
- * One stretch a run, as wide as its share of the nights, with its glyph and its word where they fit; the
- * first and last night named below. Null without a night.
+ * One stretch a run, as wide as its share of the time, with its glyph and its word where they fit; the
+ * first and last night named below. Null without a run.
+ *
+ * @param runs the oldest first.
  */
-export function layoutVerdictHistory(nights: readonly VerdictNight[], size: ChartSize) {
-  const runs = verdictRuns(nights);
+export function layoutVerdictHistory(runs: readonly VerdictRun[], size: ChartSize) {
   const first = runs[0];
   const last = runs.at(-1);
   if (first === undefined || last === undefined) return null;
   const frame = plotFrame(size, 66, { top: 26, right: 4, bottom: 26, left: 4 });
   const { plot } = frame;
-  const total = runs.reduce((sum, run) => sum + run.nights, 0);
-  let before = 0;
-  const stretches = runs.map((run) => {
-    const x = plot.x + (before / total) * plot.width;
-    const width = (run.nights / total) * plot.width;
-    before += run.nights;
+  // The last night counts as a day, so that a single one has a width.
+  const total = daysBetween(first.from, last.to) + 1;
+  const stretches = runs.map((run, index) => {
+    const next = runs[index + 1];
+    const days = next === undefined ? daysBetween(run.from, run.to) + 1 : daysBetween(run.from, next.from);
+    const x = plot.x + (daysBetween(first.from, run.from) / total) * plot.width;
+    const width = (days / total) * plot.width;
     return {
       run,
       x: tenth(x),

@@ -4,44 +4,34 @@ import type { Verdict } from '~/advice/verdict';
 import { VERDICT_COLOUR } from '~/components/verdict';
 import { ChartAbsent, ChartFigure } from './chart-figure';
 import { FONT_SIZE } from './plot-frame';
-import {
-  layoutVerdictHistory,
-  verdictRuns,
-  type VerdictHistoryLayout,
-  type VerdictNight,
-  type VerdictRun,
-} from './verdict-history-layout';
+import { layoutVerdictHistory, type VerdictHistoryLayout, type VerdictRun } from './verdict-history-layout';
 
 interface VerdictHistoryStripProps {
-  nights: readonly VerdictNight[];
+  /** The oldest first. */
+  runs: readonly VerdictRun[];
   title?: string;
-  sentence?: string;
 }
 
-/** The verdict of every night in a row, changes where they happened. */
-export function VerdictHistoryStrip({
-  nights,
-  title = 'The verdict over time',
-  sentence,
-}: VerdictHistoryStripProps) {
-  const runs = verdictRuns(nights);
+/** The verdict night after night, changes where they happened and with what brought them about. */
+export function VerdictHistoryStrip({ runs, title = 'The verdict over time' }: VerdictHistoryStripProps) {
   if (runs.length === 0) return <ChartAbsent title={title} reason="No night has been assessed yet." />;
   return (
     <ChartFigure
       title={title}
-      sentence={sentence ?? sentenceFor(runs)}
+      sentence={sentenceFor(runs)}
       table={{
-        columns: ['Verdict', 'From', 'To', 'Nights', 'Failures behind it'],
-        rows: runs.map(({ verdict, from, to, nights: count, n }) => [
+        columns: ['Verdict', 'From', 'To', 'Nights', 'Failures behind it', 'What brought it about'],
+        rows: runs.map(({ verdict, from, to, nights, n, why }) => [
           verdict,
           formatCalendarDate(from),
           formatCalendarDate(to),
-          formatCount(count),
+          formatCount(nights),
           formatCount(n),
+          why ?? '',
         ]),
       }}
       draw={(size) => {
-        const layout = layoutVerdictHistory(nights, size);
+        const layout = layoutVerdictHistory(runs, size);
         if (layout === null) return { width: 1, height: 1, content: null };
         return { width: layout.frame.width, height: layout.frame.height, content: <Strip layout={layout} /> };
       }}
@@ -107,5 +97,6 @@ function sentenceFor(runs: readonly VerdictRun[]): string {
   const since = `${last.verdict} since ${formatCalendarDate(last.from)}, from ${formatNoun(last.n, 'failure')}`;
   const before = runs.at(-2);
   const sentence = before === undefined ? since : `${since}; ${before.verdict} before`;
-  return `${sentence.charAt(0).toUpperCase()}${sentence.slice(1)}.`;
+  const why = last.why === null ? '' : ` ${last.why}`;
+  return `${sentence.charAt(0).toUpperCase()}${sentence.slice(1)}.${why}`;
 }

@@ -15,7 +15,7 @@ interface VerdictWordProps {
 export function VerdictWord({ verdict, children }: VerdictWordProps) {
   return (
     <span
-      className="inline-flex items-center gap-[0.5em] font-bold"
+      className="inline-flex items-center gap-[0.5em] font-bold whitespace-nowrap"
       style={{ color: VERDICT_COLOUR[verdict] }}
     >
       <VerdictGlyph verdict={verdict} className="w-[1.7em] flex-none" />

@@ -1,9 +1,7 @@
 import type { Database } from '../../db/connection';
+import type { CorrectableSort } from './correctable-sorts';
 import type { Effect, OutsideCause } from './failure';
 import type { SeenRecord } from './record-corrections.server';
-
-export const correctableSorts = ['day', 'tag', 'logged'] as const;
-export type CorrectableSort = (typeof correctableSorts)[number];
 
 /** Which of a class's failures to show; all of it is optional. Days are 'YYYY-MM-DD', both taken in. */
 export interface CorrectableFilter {

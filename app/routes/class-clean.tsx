@@ -20,12 +20,12 @@ import { findAssetClass } from '~/models/asset-classes.server';
 import { readClassHead } from '~/models/class-list.server';
 import { effectOfCorrection } from '~/models/correction-effect.server';
 import {
-  correctableSorts,
   everyCorrectable,
   listCorrectable,
   type CorrectableFilter,
   type CorrectableRow,
 } from '~/models/correctable-records.server';
+import { correctableSorts } from '~/models/correctable-sorts';
 import { effects } from '~/models/failure';
 import { listFailureModes } from '~/models/failure-modes.server';
 import {
@@ -44,7 +44,7 @@ import { organisation, requireRole, type RequestContext, type Viewer } from '~/s
 import { database } from '../../db/connection';
 import type { Route } from './+types/class-clean';
 
-const pageSize = 100;
+const pageSize = 50;
 const shownInPreview = 50;
 
 const day = z.iso.date().optional().catch(undefined);
@@ -376,7 +376,7 @@ function columnsIn(
       firstDirection: 'desc',
       rowHeader: true,
       cell: ({ id, failedOn, failedAt }) => (
-        <Link to={href('/failures/:failureId', { failureId: id })}>
+        <Link to={href('/failures/:failureId', { failureId: id })} className="md:whitespace-nowrap">
           {failedAt === null
             ? formatCalendarDate(failedOn, 'short')
             : formatDateTime(failedAt, timeZone, 'short')}

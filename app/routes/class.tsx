@@ -2,6 +2,8 @@ import type { ReactNode } from 'react';
 import { href, Link } from 'react-router';
 import { cautionNames } from '~/advice/caution-names';
 import { classFigures } from '~/advice/class-figures';
+import { changingActions } from '~/advice/proposal';
+import { VerdictHistoryStrip } from '~/charts/verdict-history-strip';
 import type { Caution } from '~/advice/conclusion';
 import { Breadcrumbs } from '~/components/breadcrumbs';
 import { LinkButton } from '~/components/button';
@@ -12,6 +14,8 @@ import { QuestionAge } from '~/components/class-page/question-age';
 import { exposureUnitName, QuestionTrend } from '~/components/class-page/question-trend';
 import { QuestionSchedule } from '~/components/class-page/question-schedule';
 import { RestsOn } from '~/components/class-page/rests-on';
+import type { TriedFields } from '~/components/class-page/tried-numbers';
+import { TryANumber } from '~/components/class-page/try-a-number';
 import { WhatToDo } from '~/components/class-page/what-to-do';
 import { EmptyState } from '~/components/empty-state';
 import { FactStrip } from '~/components/fact-strip';
@@ -25,6 +29,7 @@ import { currentAssessment, type Assessment } from '~/models/assessments.server'
 import { readClassHead } from '~/models/class-list.server';
 import { dayOf } from '~/models/day-number';
 import { currentProblem } from '~/models/job-runs.server';
+import { readVerdictHistory } from '~/models/verdict-history.server';
 import { organisation, requireViewer } from '~/services/viewer.server';
 import { database } from '../../db/connection';
 import type { Route } from './+types/class';
@@ -38,22 +43,34 @@ export async function loader({ context, request, params }: Route.LoaderArgs) {
   const db = database();
   const head = await readClassHead(db, viewer.siteIds, params.classId);
   if (head === null) throw new Response('There is no such class.', { status: 404 });
-  const [assessment, problem, alarms] = await Promise.all([
+  const [assessment, problem, alarms, history] = await Promise.all([
     currentAssessment(db, params.classId),
     currentProblem(db, params.classId),
     listAlarms(db, viewer.siteIds, { classId: params.classId }),
+    readVerdictHistory(db, params.classId),
   ]);
   const { currency, timeZone } = organisation(context);
   return {
     head,
     problem,
     alarms,
+    history,
     currency,
     timeZone,
-    mayClear: viewer.roles.includes('lead'),
+    asked: askedOf(request),
+    isLead: viewer.roles.includes('lead'),
+    isDecider: viewer.roles.some((role) => role !== 'technician'),
     mayEdit: viewer.roles.some((role) => role === 'lead' || role === 'admin'),
     assessment: assessment && view(assessment),
   };
+}
+
+/** The numbers that the address asks to try; null where it asks nothing. */
+function askedOf(request: Request): TriedFields | null {
+  const search = new URL(request.url).searchParams;
+  const field = (name: string) => search.get(`try-${name}`)?.slice(0, 14) ?? '';
+  if (!search.has('try-planned')) return null;
+  return { interval: field('interval'), planned: field('planned'), failure: field('failure') };
 }
 
 /** What the page shows of an assessment: words, numbers and the points of its charts. */
@@ -74,10 +91,11 @@ function view({ asOf, findings, conclusion }: Assessment) {
 }
 
 type View = ReturnType<typeof view>;
-type Head = Route.ComponentProps['loaderData']['head'];
+type Loaded = Route.ComponentProps['loaderData'];
+type Head = Loaded['head'];
 
 export default function ClassPage({ loaderData }: Route.ComponentProps) {
-  const { head, problem, assessment, alarms, mayEdit, mayClear, currency, timeZone } = loaderData;
+  const { head, problem, assessment, alarms, isLead, timeZone } = loaderData;
   return (
     <article>
       <Breadcrumbs crumbs={[{ label: 'Classes', to: href('/classes') }, { label: placesOf(head) }]} />
@@ -94,26 +112,35 @@ export default function ClassPage({ loaderData }: Route.ComponentProps) {
           </EmptyState>
         </>
       ) : (
-        <Assessed head={head} assessment={assessment} currency={currency} mayEdit={mayEdit}>
-          <AlarmNotices
-            alarms={alarms}
-            itemPlural={head.itemPlural}
-            mayClear={mayClear}
-            timeZone={timeZone}
-          />
+        <Assessed loaderData={loaderData} assessment={assessment}>
+          <AlarmNotices alarms={alarms} itemPlural={head.itemPlural} mayClear={isLead} timeZone={timeZone} />
         </Assessed>
       )}
-      <p className="no-print mt-6 flex flex-wrap gap-3">
-        <LinkButton tone="quiet" to={href('/classes/:classId/records', { classId: head.id })}>
-          Failures and planned work
-        </LinkButton>
-        {mayEdit && (
-          <LinkButton tone="quiet" to={href('/classes/:classId/settings', { classId: head.id })}>
-            Class settings
-          </LinkButton>
-        )}
-      </p>
+      <ClassLinks loaderData={loaderData} />
     </article>
+  );
+}
+
+/** Where to go on from here, by what the viewer may do. */
+function ClassLinks({ loaderData }: { loaderData: Loaded }) {
+  const { head, isLead, isDecider, mayEdit } = loaderData;
+  const { id: classId } = head;
+  const links = [
+    { to: href('/classes/:classId/records', { classId }), label: 'Failures and planned work', isShown: true },
+    { to: href('/classes/:classId/clean', { classId }), label: 'Put records right', isShown: isLead },
+    { to: `${href('/changes')}?class=${classId}`, label: 'Changes of this class', isShown: isDecider },
+    { to: href('/classes/:classId/settings', { classId }), label: 'Class settings', isShown: mayEdit },
+  ];
+  return (
+    <nav aria-label="More about this class" className="no-print mt-6 flex flex-wrap gap-3">
+      {links
+        .filter(({ isShown }) => isShown)
+        .map(({ to, label }) => (
+          <LinkButton key={label} tone="quiet" to={to}>
+            {label}
+          </LinkButton>
+        ))}
+    </nav>
   );
 }
 
@@ -138,17 +165,17 @@ function CautionsAtAGlance({ cautions }: { cautions: readonly Caution[] }) {
 }
 
 interface AssessedProps {
-  head: Head;
+  loaderData: Loaded;
   assessment: View;
-  currency: string;
-  mayEdit: boolean;
   /** What stands between the sentence and the questions. */
   children: ReactNode;
 }
 
-function Assessed({ head, assessment, currency, mayEdit, children }: AssessedProps) {
+function Assessed({ loaderData, assessment, children }: AssessedProps) {
+  const { head, currency, mayEdit, isLead, asked, history } = loaderData;
   const { conclusion, findings, figures, ageRank, asOf, watchedSince } = assessment;
   const { itemSingular, itemPlural } = head;
+  const mayPutForward = isLead && !head.statutory && !head.endangersPeople;
   return (
     <>
       <h1 className="flex items-baseline gap-3">
@@ -195,12 +222,36 @@ function Assessed({ head, assessment, currency, mayEdit, children }: AssessedPro
         costsLink={
           mayEdit && <Link to={href('/classes/:classId/settings', { classId: head.id })}>Give the costs</Link>
         }
-      />
-      <WhatToDo conclusion={conclusion} />
+      >
+        <TryANumber
+          classId={head.id}
+          schedule={findings.schedule}
+          clock={findings.clock}
+          currency={currency}
+          itemPlural={itemPlural}
+          asked={asked}
+          mayPutForward={mayPutForward}
+        />
+      </QuestionSchedule>
+      <WhatToDo conclusion={conclusion}>
+        {mayPutForward && (
+          <p className="no-print mt-5">
+            <LinkButton
+              tone={changingActions.includes(conclusion.proposal.action) ? 'main' : 'quiet'}
+              to={href('/classes/:classId/change', { classId: head.id })}
+            >
+              {changingActions.includes(conclusion.proposal.action)
+                ? 'Put this change forward'
+                : 'Put a change forward by hand'}
+            </LinkButton>
+          </p>
+        )}
+      </WhatToDo>
       <FailureModes modes={findings.modes} verdicts={conclusion.modes} clock={findings.clock} />
       <ExpectedFailures forecast={findings.forecast} itemPlural={itemPlural} />
       <RestsOn findings={findings} itemSingular={itemSingular} watchedSince={watchedSince}>
-        <p>
+        <VerdictHistoryStrip runs={history} />
+        <p className="mt-4">
           <Link to={href('/classes/:classId/records', { classId: head.id })}>
             The failures and planned work behind this
           </Link>

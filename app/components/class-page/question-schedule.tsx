@@ -1,13 +1,13 @@
 import type { ReactNode } from 'react';
 import type { Conclusion } from '~/advice/conclusion';
 import type { Findings } from '~/advice/findings';
-import { daysAMonth, intervalWords } from '~/advice/practicable-interval';
+import { intervalWords } from '~/advice/practicable-interval';
 import type { PricedSchedule, RangedMoney, ScheduleFindings } from '~/advice/schedule-findings';
-import { CostByIntervalChart } from '~/charts/cost-by-interval-chart';
 import { formatMoney } from '~/format/money';
 import { formatInterval, formatPercent } from '~/format/number';
 import { FigureList } from '../figure-list';
 import { QuestionSection } from '../question-section';
+import { CostCurve } from './cost-curve';
 
 interface QuestionScheduleProps {
   answer: Conclusion['answers']['schedule'];
@@ -17,6 +17,8 @@ interface QuestionScheduleProps {
   currency: string;
   /** Where the costs can be given, for those who may; shown where they are missing. */
   costsLink: ReactNode;
+  /** What follows the curve. */
+  children?: ReactNode;
 }
 
 const policyWords: Record<PricedSchedule['policy'], string> = {
@@ -26,7 +28,8 @@ const policyWords: Record<PricedSchedule['policy'], string> = {
 };
 
 /** Question 3: does a schedule pay? */
-export function QuestionSchedule({ answer, clock, schedule, currency, costsLink }: QuestionScheduleProps) {
+export function QuestionSchedule(props: QuestionScheduleProps) {
+  const { answer, clock, schedule, currency, costsLink, children } = props;
   return (
     <QuestionSection
       id="schedule-pays"
@@ -52,7 +55,7 @@ export function QuestionSchedule({ answer, clock, schedule, currency, costsLink 
       }
     >
       {schedule.kind === 'priced' ? (
-        <PricedChart schedule={schedule} clock={clock} currency={currency} />
+        <CostCurve schedule={schedule} clock={clock} currency={currency} />
       ) : (
         <p className="text-grey">
           {schedule.kind === 'costs-missing'
@@ -61,6 +64,7 @@ export function QuestionSchedule({ answer, clock, schedule, currency, costsLink 
           {schedule.kind === 'costs-missing' && costsLink}
         </p>
       )}
+      {children}
     </QuestionSection>
   );
 }
@@ -102,33 +106,4 @@ function testFigures({ failureFinding }: ScheduleFindings, clock: Findings['cloc
           : `test every ${intervalWords(practicable, clock)}; a statutory interval comes first`,
     },
   ];
-}
-
-function PricedChart({
-  schedule,
-  clock,
-  currency,
-}: {
-  schedule: PricedSchedule;
-  clock: Findings['clock'];
-  currency: string;
-}) {
-  const { curve, changes, today, current, best, supportedAge } = schedule;
-  const unit = clock === 'operating-hours' ? 1 : daysAMonth;
-  const bestPoint =
-    changes.best !== null && best.interval !== null
-      ? { interval: best.interval / unit, cost: changes.best.costPerYear.value }
-      : undefined;
-  const { value, low, high } = changes.stop.costPerYear;
-  return (
-    <CostByIntervalChart
-      curve={curve.map((point) => ({ ...point, interval: point.interval / unit }))}
-      runToFailure={{ cost: value, low, high }}
-      today={current.interval === null ? undefined : { interval: current.interval / unit, cost: today.value }}
-      best={bestPoint}
-      supportedUntil={supportedAge === null ? undefined : supportedAge / unit}
-      currency={currency}
-      intervalUnit={clock === 'operating-hours' ? 'hour' : 'month'}
-    />
-  );
 }

@@ -1,3 +1,4 @@
+import type { ReactNode } from 'react';
 import type { Conclusion } from '~/advice/conclusion';
 import { CautionList } from '../caution-list';
 import { QuestionSection } from '../question-section';
@@ -5,8 +6,11 @@ import { QuestionSection } from '../question-section';
 /** What to do: the cautions first, then the proposal with what it is worth, why, and what would make it wrong. */
 export function WhatToDo({
   conclusion,
+  children,
 }: {
   conclusion: Pick<Conclusion, 'cautions' | 'proposal' | 'together'>;
+  /** What can be done about it, after everything that has to be read first. */
+  children?: ReactNode;
 }) {
   const { cautions, proposal, together } = conclusion;
   const { title, worth, why, whatWouldMakeItWrong, whatIsMissing } = proposal.words;
@@ -23,6 +27,7 @@ export function WhatToDo({
       <Sentences title="Why" sentences={why} />
       <Sentences title="What would make this wrong" sentences={whatWouldMakeItWrong} />
       <Sentences title="What is missing" sentences={whatIsMissing} />
+      {children}
     </QuestionSection>
   );
 }

@@ -7,7 +7,7 @@ import { layoutCumulativeFailures } from '~/charts/cumulative-failures-layout';
 import { layoutHazardByAge } from '~/charts/hazard-by-age-layout';
 import { isInside, overlaps, type PlacedLabel } from '~/charts/label-placement';
 import type { ChartSize, PlotFrame } from '~/charts/plot-frame';
-import { layoutVerdictHistory, verdictRuns } from '~/charts/verdict-history-layout';
+import { layoutVerdictHistory } from '~/charts/verdict-history-layout';
 
 const SIZES: ChartSize[] = ['wide', 'narrow'];
 
@@ -169,9 +169,9 @@ describe.each(SIZES)('cost by interval, %s', (size) => {
   it('puts today and the best at their interval and cost', () => {
     const { markers, xScale, yScale, failureLine, hatch, frame, labels } =
       layoutCostByInterval(data, size) ?? expect.fail('nothing laid out');
-    expect(markers.map(({ word }) => word)).toEqual(['best', 'today']);
-    expect(markers[1]?.x).toBeCloseTo(xScale(12), 0);
-    expect(markers[1]?.y).toBeCloseTo(yScale(282746), 0);
+    expect(markers.map(({ word }) => word)).toEqual(['today', 'best']);
+    expect(markers[0]?.x).toBeCloseTo(xScale(12), 0);
+    expect(markers[0]?.y).toBeCloseTo(yScale(282746), 0);
     expect(failureLine?.y).toBeCloseTo(yScale(340000), 0);
     expect(hatch?.x).toBeCloseTo(xScale(14), 0);
     expectTidyLabels(frame, labels);
@@ -183,6 +183,16 @@ describe.each(SIZES)('cost by interval, %s', (size) => {
       layoutCostByInterval({ ...data, curve: [dear, ...curve] }, size) ?? expect.fail('nothing laid out');
     expect(line[0]?.y).toBeCloseTo(frame.plot.y, 0);
     for (const { y } of line) expect(y).toBeGreaterThanOrEqual(frame.plot.y - 0.1);
+  });
+
+  it('marks what somebody tries beside them', () => {
+    const tried = { interval: 9, cost: 200_000 };
+    const { markers, xScale } =
+      layoutCostByInterval({ ...data, tried }, size) ?? expect.fail('nothing laid out');
+    expect(markers.map(({ word }) => word)).toEqual(['today', 'best', 'tried']);
+    expect(markers[2]?.x).toBeCloseTo(xScale(9), 0);
+    const same = layoutCostByInterval({ ...data, tried: data.best }, size);
+    expect(same?.markers.map(({ word }) => word)).toEqual(['today', 'best and tried']);
   });
 
   it('marks one place when today is the best', () => {
@@ -198,28 +208,33 @@ describe.each(SIZES)('cost by interval, %s', (size) => {
 });
 
 describe('verdict history', () => {
-  const nights = ['undecided', 'undecided', 'wear-out'].map((verdict, index) => ({
-    date: `2026-11-0${3 - index}`,
-    verdict: verdict as 'undecided' | 'wear-out',
-    n: 10 - index,
-  }));
-
-  it('puts nights in order and runs of one verdict together', () => {
-    expect(verdictRuns(nights)).toEqual([
-      { verdict: 'wear-out', from: '2026-11-01', to: '2026-11-01', nights: 1, n: 8 },
-      { verdict: 'undecided', from: '2026-11-02', to: '2026-11-03', nights: 2, n: 10 },
-    ]);
+  const run = (verdict: 'undecided' | 'wear-out', from: string, to: string) => ({
+    verdict,
+    from,
+    to,
+    nights: 1,
+    n: 10,
+    why: null,
   });
+  const runs = [run('undecided', '2026-11-01', '2026-11-08'), run('wear-out', '2026-11-11', '2026-11-15')];
 
-  it('gives each run its share of the width', () => {
-    const layout = layoutVerdictHistory(nights, 'wide') ?? expect.fail('nothing laid out');
+  it('gives each run its share of the time, up to the run that follows', () => {
+    const layout = layoutVerdictHistory(runs, 'wide') ?? expect.fail('nothing laid out');
     const [first, second] = layout.stretches;
-    expect((second?.width ?? 0) / (first?.width ?? 1)).toBeCloseTo(2, 1);
+    expect((first?.width ?? 0) / (second?.width ?? 1)).toBeCloseTo(2, 1);
+    expect((first?.x ?? 0) + (first?.width ?? 0)).toBeCloseTo(second?.x ?? 0, 0);
     expect((second?.x ?? 0) + (second?.width ?? 0)).toBeCloseTo(
       layout.frame.plot.x + layout.frame.plot.width,
       0,
     );
+    expect(layout.dates.map(({ text }) => text)).toEqual(['1 Nov 2026', '15 Nov 2026']);
+  });
+
+  it('has nothing to lay out before the first night, and a width for a single one', () => {
     expect(layoutVerdictHistory([], 'wide')).toBeNull();
+    const single = layoutVerdictHistory([run('wear-out', '2026-11-01', '2026-11-01')], 'narrow')!;
+    expect(single.stretches[0]!.width).toBeCloseTo(single.frame.plot.width, 0);
+    expect(single.dates).toHaveLength(1);
   });
 });
 

@@ -164,7 +164,7 @@ it.each([
     <AgeRankStrip key="3" marks={[]} meanShare={0.5} verdict="undecided" weightlessCount={3} />,
     '3 failures, but each time all peers were of one age',
   ],
-  ['no night', <VerdictHistoryStrip key="4" nights={[]} />, 'No night has been assessed yet.'],
+  ['no night', <VerdictHistoryStrip key="4" runs={[]} />, 'No night has been assessed yet.'],
 ])('says in a sentence when there is %s', (_, chart, sentence) => {
   const markup = renderToStaticMarkup(chart);
   expect(markup).toContain(sentence);
