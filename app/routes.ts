@@ -11,6 +11,7 @@ export default [
     route('classes/:classId', 'routes/class.tsx'),
     route('classes/:classId/settings', 'routes/class-settings.tsx'),
     route('classes/:classId/records', 'routes/class-records.tsx'),
+    route('classes/:classId/tasks', 'routes/class-tasks.tsx'),
     route('classes/:classId/clean', 'routes/class-clean.tsx'),
     route('classes/:classId/change', 'routes/class-change.tsx'),
     route('changes', 'routes/changes.tsx'),

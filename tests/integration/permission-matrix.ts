@@ -34,6 +34,7 @@ export const permissions: Readonly<Record<string, Permission>> = {
   'routes/class.tsx': { see: ofTheSite },
   'routes/class-settings.tsx': { see: keepers, act: { any: keepers } },
   'routes/class-records.tsx': { see: ofTheSite },
+  'routes/class-tasks.tsx': { see: ofTheSite, act: { add: keepers, describe: keepers, end: keepers } },
   'routes/class-clean.tsx': {
     see: ['lead'],
     act: {
