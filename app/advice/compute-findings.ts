@@ -97,6 +97,7 @@ export function computeFindings(evidence: ClassEvidence, alarmState: AlarmState)
     }),
     forecast: forecast({
       positions: everyPosition,
+      siteOf: (positionId) => evidence.places.get(positionId) ?? nowhere,
       now,
       overall: rate.overall,
       lastYear: rate.lastYear,
@@ -203,12 +204,13 @@ function ageRank(positions: readonly Position[]): Findings['ageRank'] {
   return { ...findings, marks: marks.map(({ share, size, at }) => ({ share, peers: size, at })) };
 }
 
+const nowhere = { tag: 'not known', siteId: '', siteName: 'not known' };
+
 function scatterFindings(
   { places, visits, groups }: ClassEvidence,
   positions: readonly Position[],
   fits: Pick<Parameters<typeof findScatter>[0], 'pooled' | 'asset' | 'life'>,
 ): Findings['scatter'] {
-  const nowhere = { tag: 'not known', siteId: '', siteName: 'not known' };
   return findScatter({
     positions,
     placeOf: (positionId) => places.get(positionId) ?? nowhere,

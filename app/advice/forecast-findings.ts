@@ -14,6 +14,14 @@ export const forecastConfidence = 0.9;
 /** Months ahead. */
 export const forecastMonths = [1, 3, 12] as const;
 
+const period = z.object({
+  months: z.union([z.literal(1), z.literal(3), z.literal(12)]),
+  mean: z.number().min(0),
+  /** Whole failures; at least so many and at most so many, with the confidence above. */
+  low: z.number().int(),
+  high: z.number().int(),
+});
+
 export const forecastFindingsSchema = z.discriminatedUnion('kind', [
   /** Nothing in service, or never watched. */
   z.object({ kind: z.literal('nothing-to-go-by') }),
@@ -24,13 +32,16 @@ export const forecastFindingsSchema = z.discriminatedUnion('kind', [
     /** Positions in service now, and of these the ones whose item's age nobody knows. */
     positions: z.number().int(),
     agesUnknown: z.number().int(),
-    periods: z.array(
+    periods: z.array(period),
+    /** Site by site, in order of name. Means add up to the class's; ranges do not. */
+    sites: z.array(
       z.object({
-        months: z.union([z.literal(1), z.literal(3), z.literal(12)]),
-        mean: z.number().min(0),
-        /** Whole failures; at least so many and at most so many, with the confidence above. */
-        low: z.number().int(),
-        high: z.number().int(),
+        siteId: z.string(),
+        siteName: z.string(),
+        positions: z.number().int(),
+        periods: z.array(period),
+        /** To last a lead time with the chance of the service level; null where no lead time is set. */
+        spares: z.number().int().nullable(),
       }),
     ),
     /** Between failures of one position over the records the forecast goes by, clock units; ends left open are null. */

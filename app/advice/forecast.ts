@@ -19,6 +19,8 @@ import { fewestFailuresForVerdict } from './verdict';
 
 export interface ForecastInput {
   readonly positions: readonly Position[];
+  /** The site a position stands at. */
+  readonly siteOf: (positionId: string) => { siteId: string; siteName: string };
   /** Day number: the forecast starts here. */
   readonly now: number;
   /** Failures and exposure of all records, and of the year before `now`; clock units. */
@@ -52,6 +54,11 @@ interface Expected {
   readonly mixture: Pick<CountMixture, 'quantile'>;
 }
 
+/** What is expected of the class in a period, and of a part of its items in the same. */
+interface ExpectedOfClass extends Expected {
+  readonly ofPart: (part: ItemsInPlace) => Expected;
+}
+
 /**
  * Failures expected of the class in the next 1, 3 and 12 months, each with its 90 % range, the mean time
  * between failures with its interval, and the spares a lead time needs.
@@ -69,15 +76,28 @@ export function forecast(input: ForecastInput): ForecastFindings {
   const expect = basis === 'ages' ? byAges(input, inPlace) : atRate(rate, inPlace, now);
   const tail = (1 - forecastConfidence) / 2;
   const demand = leadTimeDays === null ? null : expect(leadTimeDays);
+  const periods = forecastMonths.map((months) => ({ months, expected: expect(months * daysAMonth) }));
+  const told = ({ mean, mixture }: Expected) => ({
+    mean,
+    low: mixture.quantile(tail),
+    high: mixture.quantile(1 - tail),
+  });
   return {
     kind: 'forecast',
     basis,
     confidence: forecastConfidence,
     positions: inPlace.positions.length,
     agesUnknown: inPlace.agesUnknown,
-    periods: forecastMonths.map((months) => {
-      const { mean, mixture } = expect(months * daysAMonth);
-      return { months, mean, low: mixture.quantile(tail), high: mixture.quantile(1 - tail) };
+    periods: periods.map(({ months, expected }) => ({ months, ...told(expected) })),
+    sites: bySite(inPlace.positions, input.siteOf).map(({ siteId, siteName, positions }) => {
+      const part = itemsInPlace(positions, now);
+      return {
+        siteId,
+        siteName,
+        positions: positions.length,
+        periods: periods.map(({ months, expected }) => ({ months, ...told(expected.ofPart(part)) })),
+        spares: demand === null ? null : demand.ofPart(part).mixture.quantile(input.serviceLevel),
+      };
     }),
     meanTime: {
       value: rate.failures === 0 ? null : rate.exposure / rate.failures,
@@ -120,34 +140,66 @@ function basisOf(
     : { basis: 'rate', rate: count(overall) };
 }
 
-function atRate(rate: CountInExposure, inPlace: ItemsInPlace, now: number): (days: number) => Expected {
+function bySite(
+  positions: readonly Position[],
+  siteOf: ForecastInput['siteOf'],
+): { siteId: string; siteName: string; positions: Position[] }[] {
+  const sites = new Map<string, { siteId: string; siteName: string; positions: Position[] }>();
+  for (const position of positions) {
+    const site = siteOf(position.id);
+    const held = sites.get(site.siteId) ?? { ...site, positions: [] };
+    held.positions.push(position);
+    sites.set(site.siteId, held);
+  }
+  return [...sites.values()].sort((a, b) => a.siteName.localeCompare(b.siteName, 'en'));
+}
+
+function atRate(
+  rate: CountInExposure,
+  inPlace: ItemsInPlace,
+  now: number,
+): (days: number) => ExpectedOfClass {
   return (days) => {
-    const exposure = exposureToCome(inPlace, now, days);
-    const expected = expectedFailuresAtConstantRate(
-      rate.failures,
-      rate.exposure,
-      exposure,
-      forecastConfidence,
-    );
-    return { mean: expected.mean, mixture: expected };
+    const ofPart = (part: ItemsInPlace): Expected => {
+      const { failures, exposure } = rate;
+      const ahead = exposureToCome(part, now, days);
+      const expected = expectedFailuresAtConstantRate(failures, exposure, ahead, forecastConfidence);
+      return { mean: expected.mean, mixture: expected };
+    };
+    return { ...ofPart(inPlace), ofPart };
   };
 }
 
 function byAges(
   { fit, now, currentInterval }: ForecastInput,
   inPlace: ItemsInPlace,
-): (days: number) => Expected {
+): (days: number) => ExpectedOfClass {
   if (fit.kind !== 'fit') throw new TypeError('a forecast by ages needs a fit');
-  const ages = [...inPlace.ages, ...spreadOver(inPlace.ages, inPlace.agesUnknown)];
   const draws: Weibull[] = weibullDraws(fit).slice(0, forecastDraws);
+  const nothing: Expected = { mean: 0, mixture: new CountMixture([0]) };
+  const aheadOf = (part: ItemsInPlace, days: number): FailuresToCome | null => {
+    const horizon = exposureToCome(part, now, days) / part.positions.length;
+    const known = part.ages.length > 0 ? part.ages : inPlace.ages;
+    const ages = [...part.ages, ...spreadOver(known, part.agesUnknown)];
+    return horizon > 0 ? new FailuresToCome({ ages, horizon, plannedInterval: currentInterval }) : null;
+  };
   return (days) => {
-    const horizon = exposureToCome(inPlace, now, days) / inPlace.positions.length;
-    if (!(horizon > 0)) return { mean: 0, mixture: new CountMixture([0]) };
-    const ahead = new FailuresToCome({ ages, horizon, plannedInterval: currentInterval });
+    const ahead = aheadOf(inPlace, days);
+    if (ahead === null) return { ...nothing, ofPart: () => nothing };
     const steps = Math.min(mostSteps, Math.max(stepsOfAMonth, Math.ceil(days / daysAMonth)));
+    const mean = ahead.expected(fit, finer * steps);
     const means = draws.map((draw) => ahead.expected(draw, steps));
     const dispersion = ahead.dispersion(fit, finer * steps);
-    return { mean: ahead.expected(fit, finer * steps), mixture: new CountMixture(means, dispersion) };
+    // A part has its own mean from its own ages; what is not known of the life, and how evenly it fails, are the class's.
+    const ofPart = (part: ItemsInPlace): Expected => {
+      const share = mean > 0 ? (aheadOf(part, days)?.expected(fit, finer * steps) ?? 0) / mean : 0;
+      const mixture = new CountMixture(
+        means.map((one) => one * share),
+        dispersion,
+      );
+      return { mean: mean * share, mixture };
+    };
+    return { mean, mixture: new CountMixture(means, dispersion), ofPart };
   };
 }
 

@@ -4,7 +4,7 @@ import { trends, type Trend } from '~/advice/trend';
 import { verdicts, type Verdict } from '~/advice/verdict';
 import type { Database } from '../../db/connection';
 import type { ClassSortKey } from './class-sort';
-import { assessmentSummarySchema, type AssessmentSummary } from './assessment-summary';
+import { listedSummarySchema, type ListedSummary } from './assessment-summary';
 
 export interface ClassListFilter {
   /** Only classes with an asset at this site. */
@@ -30,7 +30,7 @@ export interface ClassListRow {
     trend: Trend;
     failures: number;
     cautionCodes: CautionCode[];
-    summary: AssessmentSummary;
+    summary: ListedSummary;
   } | null;
 }
 
@@ -58,7 +58,7 @@ const rowSchema = z.object({
   trend: z.enum(trends).nullable(),
   failures: z.number().nullable(),
   cautionCodes: z.array(z.string()).nullable(),
-  summary: assessmentSummarySchema.nullable(),
+  summary: listedSummarySchema.nullable(),
 });
 
 /**
@@ -77,7 +77,7 @@ export async function listClasses(
   const page = await db.raw<{ rows: unknown[] }>(
     `select c.id, c.name, c.statutory, c.endangers_people as "endangersPeople",
             a.as_of as "asOf", a.verdict, a.trend, a.failures,
-            a.caution_codes as "cautionCodes", a.summary
+            a.caution_codes as "cautionCodes", a.summary - 'toCome' as summary
        ${from}
       order by ${orderBy[filter.sort]} ${direction} nulls last, a.failures desc nulls last, lower(c.name)
       limit :limit offset :offset`,
@@ -165,4 +165,18 @@ export async function readClassHead(
   if (siteIds === 'all') return head;
   const sites = head.sites.filter(({ id }) => siteIds.includes(id));
   return sites.length === 0 ? null : { ...head, sites };
+}
+
+/** Every class that a filter leaves, a batch at a time. */
+export async function* everyClass(
+  db: Database,
+  siteIds: readonly string[] | 'all',
+  filter: Omit<ClassListFilter, 'page' | 'pageSize'>,
+): AsyncGenerator<ClassListRow> {
+  const pageSize = 500;
+  for (let page = 1; ; page += 1) {
+    const { rows } = await listClasses(db, siteIds, { ...filter, page, pageSize });
+    yield* rows;
+    if (rows.length < pageSize) return;
+  }
 }

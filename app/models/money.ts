@@ -29,3 +29,8 @@ export function moneyFieldText(amountMinor: number, currencyCode: string): strin
   const digits = minorDigits(currencyCode);
   return (amountMinor / 10 ** digits).toFixed(digits);
 }
+
+/** An amount in plain decimals for a file, in the currency's main unit; null stays null. */
+export function minorToPlain(amountMinor: number | null, currencyCode: string): number | null {
+  return amountMinor === null ? null : amountMinor / 10 ** minorDigits(currencyCode);
+}

@@ -1,26 +1,24 @@
-import { href, Link } from 'react-router';
-import { z } from 'zod';
+import { Form, href, Link } from 'react-router';
 import { Breadcrumbs } from '~/components/breadcrumbs';
+import { Button } from '~/components/button';
+import { recordsQuery, recordsSearch, type RecordsState } from '~/components/class-page/records-search';
 import { DataTable, type Column } from '~/components/data-table';
 import { Disclosure } from '~/components/disclosure';
 import { EmptyState } from '~/components/empty-state';
 import { formatCalendarDate, formatDateTime } from '~/format/date';
 import { formatCount, formatNoun } from '~/format/number';
 import { Pagination } from '~/components/pagination';
+import { SelectField } from '~/components/select-field';
+import { TextField } from '~/components/text-field';
 import { readClassHead } from '~/models/class-list.server';
 import { type GroupAsset, listGroupAssets } from '~/models/fitted-items.server';
 import { listClassRecords, type ClassRecordRow } from '~/models/class-record-list.server';
+import { classRecordSorts } from '~/models/class-record-sorts';
 import { organisation, requireViewer } from '~/services/viewer.server';
 import { database } from '../../db/connection';
 import type { Route } from './+types/class-records';
 
 const pageSize = 100;
-const searchSchema = z.object({
-  kind: z.enum(['failure', 'planned-work']).optional().catch(undefined),
-  page: z.coerce.number().int().min(1).max(100_000).catch(1),
-});
-type ListState = z.infer<typeof searchSchema>;
-
 export const meta: Route.MetaFunction = ({ loaderData }) => [
   { title: `Records of ${loaderData?.head.name ?? 'a class'} · Intervale` },
 ];
@@ -30,28 +28,24 @@ export async function loader({ context, request, params }: Route.LoaderArgs) {
   const db = database();
   const head = await readClassHead(db, viewer.siteIds, params.classId);
   if (head === null) throw new Response('There is no such class.', { status: 404 });
-  const state = searchSchema.parse(Object.fromEntries(new URL(request.url).searchParams));
-  const { rows, total } = await listClassRecords(db, viewer.siteIds, params.classId, { ...state, pageSize });
+  const { site, ...rest } = recordsSearch.parse(Object.fromEntries(new URL(request.url).searchParams));
+  const state = { ...rest, site };
+  const { rows, total } = await listClassRecords(
+    db,
+    viewer.siteIds,
+    params.classId,
+    { ...rest, siteId: site },
+    { ...rest, pageSize },
+  );
   const mayDateItems = viewer.roles.some((role) => role === 'lead' || role === 'admin');
   const groups = mayDateItems ? await listGroupAssets(db, params.classId, viewer.siteIds) : [];
   return { head, rows, total, groups, state, timeZone: organisation(context).timeZone };
 }
 
-const kinds: readonly { kind: ListState['kind']; label: string }[] = [
-  { kind: undefined, label: 'All' },
-  { kind: 'failure', label: 'Failures' },
-  { kind: 'planned-work', label: 'Planned work' },
-];
-
 export default function ClassRecords({ loaderData }: Route.ComponentProps) {
   const { head, rows, total, groups, state, timeZone } = loaderData;
-  const addressOf = ({ kind, page }: ListState) => {
-    const search = new URLSearchParams();
-    if (kind) search.set('kind', kind);
-    if (page > 1) search.set('page', String(page));
-    const query = search.toString();
-    return href('/classes/:classId/records', { classId: head.id }) + (query && `?${query}`);
-  };
+  const addressOf = (next: RecordsState) =>
+    href('/classes/:classId/records', { classId: head.id }) + recordsQuery(next);
   return (
     <>
       <Breadcrumbs
@@ -66,27 +60,24 @@ export default function ClassRecords({ loaderData }: Route.ComponentProps) {
         Everything recorded for {head.itemPlural}, voided records too: nothing is ever deleted.
       </p>
       <GroupAssets groups={groups} itemPlural={head.itemPlural} />
-      <ul className="my-3 flex gap-6">
-        {kinds.map(({ kind, label }) => (
-          <li key={label}>
-            <Link
-              to={addressOf({ kind, page: 1 })}
-              aria-current={kind === state.kind ? 'true' : undefined}
-              className="inline-flex min-h-11 items-center aria-[current]:font-bold"
-            >
-              {label}
-            </Link>
-          </li>
-        ))}
-      </ul>
+      <RecordsFilter state={state} sites={head.sites} />
       <DataTable
         caption={`Records of ${head.name}`}
         captionHidden
         columns={columnsIn(timeZone)}
         rows={rows}
         rowKey={({ id }) => id}
+        sort={{ key: state.sort, direction: state.direction }}
+        hrefFor={({ key, direction }) =>
+          addressOf({
+            ...state,
+            sort: classRecordSorts.find((one) => one === key) ?? 'day',
+            direction,
+            page: 1,
+          })
+        }
         empty={
-          <EmptyState title="Nothing recorded yet">
+          <EmptyState title={isFiltered(state) ? 'No record matches' : 'Nothing recorded yet'}>
             Failures come here as soon as somebody <Link to={href('/log')}>logs one</Link>.
           </EmptyState>
         }
@@ -98,7 +89,71 @@ export default function ClassRecords({ loaderData }: Route.ComponentProps) {
         noun="records"
         hrefFor={(page) => addressOf({ ...state, page })}
       />
+      {total > 0 && (
+        <p className="no-print">
+          <Link
+            reloadDocument
+            to={
+              href('/classes/:classId/records.csv', { classId: head.id }) +
+              recordsQuery({ ...state, page: 1 })
+            }
+            className="inline-flex min-h-11 items-center"
+          >
+            All {formatNoun(total, 'record')} as CSV
+          </Link>
+        </p>
+      )}
     </>
+  );
+}
+
+function isFiltered({ kind, site, from, to, voided }: RecordsState): boolean {
+  return Boolean(kind ?? site ?? from ?? to ?? voided);
+}
+
+function RecordsFilter({
+  state,
+  sites,
+}: {
+  state: RecordsState;
+  sites: readonly { id: string; name: string }[];
+}) {
+  return (
+    <Form
+      className="my-4 flex flex-wrap items-end gap-x-5 gap-y-2 [&_button]:mb-4"
+      key={JSON.stringify(state)}
+    >
+      <SelectField
+        name="kind"
+        label="What"
+        defaultValue={state.kind ?? ''}
+        emptyLabel="All"
+        options={[
+          { value: 'failure', label: 'Failures' },
+          { value: 'planned-work', label: 'Planned work' },
+        ]}
+      />
+      <SelectField
+        name="site"
+        label="Site"
+        defaultValue={state.site ?? ''}
+        emptyLabel="All"
+        options={sites.map(({ id, name }) => ({ value: id, label: name }))}
+      />
+      <TextField type="date" name="from" label="From" defaultValue={state.from} />
+      <TextField type="date" name="to" label="Up to" defaultValue={state.to} />
+      <SelectField
+        name="voided"
+        label="Voided"
+        defaultValue={state.voided ?? ''}
+        emptyLabel="All"
+        options={[
+          { value: 'no', label: 'Those that count' },
+          { value: 'yes', label: 'Voided ones' },
+        ]}
+      />
+      <Button tone="quiet">Show</Button>
+    </Form>
   );
 }
 
@@ -131,6 +186,8 @@ function columnsIn(timeZone: string): Column<ClassRecordRow>[] {
     {
       key: 'day',
       header: 'When',
+      sortable: true,
+      firstDirection: 'desc',
       rowHeader: true,
       cell: ({ id, kind, day, at }) => {
         const when = at === null ? formatCalendarDate(day, 'short') : formatDateTime(at, timeZone, 'short');
@@ -141,7 +198,7 @@ function columnsIn(timeZone: string): Column<ClassRecordRow>[] {
         );
       },
     },
-    { key: 'tag', header: 'Asset', cell: ({ tag, siteName }) => `${tag}, ${siteName}` },
+    { key: 'tag', header: 'Asset', sortable: true, cell: ({ tag, siteName }) => `${tag}, ${siteName}` },
     { key: 'what', header: 'What', cell: whatHappened },
     {
       key: 'result',
@@ -155,8 +212,10 @@ function columnsIn(timeZone: string): Column<ClassRecordRow>[] {
     },
     { key: 'note', header: 'Note', cell: ({ note }) => note },
     {
-      key: 'from',
+      key: 'logged',
       header: 'Logged by',
+      sortable: true,
+      firstDirection: 'desc',
       cell: ({ loggedBy, importId }) => loggedBy ?? (importId === null ? 'not known' : 'import'),
     },
     {

@@ -1,10 +1,10 @@
 import { Form, href, Link, useNavigation } from 'react-router';
-import { z } from 'zod';
 import { cautionNames } from '~/advice/caution-names';
 import type { CautionCode } from '~/advice/conclusion';
 import { clockUnit } from '~/advice/clock-unit';
 import { verdicts } from '~/advice/verdict';
 import { Button } from '~/components/button';
+import { classesFilter, classesQuery, classesSearch, type ClassesState } from '~/components/classes/search';
 import { DataTable, type Column } from '~/components/data-table';
 import { EmptyState } from '~/components/empty-state';
 import { Estimate } from '~/components/estimate';
@@ -23,34 +23,14 @@ import type { Route } from './+types/classes';
 
 const pageSize = 50;
 
-/** What the address may say of the list; anything else is as if it said nothing. */
-const searchSchema = z.object({
-  site: z.uuid().optional().catch(undefined),
-  verdict: z
-    .enum([...verdicts, 'not-assessed'])
-    .optional()
-    .catch(undefined),
-  statutory: z.enum(['yes', 'no']).optional().catch(undefined),
-  sort: z.enum(classSortKeys).catch('attention'),
-  direction: z.enum(['asc', 'desc']).catch('desc'),
-  page: z.coerce.number().int().min(1).max(100_000).catch(1),
-});
-type ListState = z.infer<typeof searchSchema>;
-
 export const meta: Route.MetaFunction = () => [{ title: 'Classes · Intervale' }];
 
 export async function loader({ context, request }: Route.LoaderArgs) {
   const viewer = requireViewer(context, request);
-  const state = searchSchema.parse(Object.fromEntries(new URL(request.url).searchParams));
+  const state = classesSearch.parse(Object.fromEntries(new URL(request.url).searchParams));
   const db = database();
-  const { site, statutory, ...rest } = state;
   const [{ rows, total }, sites] = await Promise.all([
-    listClasses(db, viewer.siteIds, {
-      ...rest,
-      siteId: site,
-      statutory: statutory && statutory === 'yes',
-      pageSize,
-    }),
+    listClasses(db, viewer.siteIds, { ...classesFilter(state), page: state.page, pageSize }),
     listSites(db, viewer.siteIds),
   ]);
   return { rows, total, sites, state };
@@ -60,18 +40,7 @@ function sortKeyOf(columnKey: string): ClassSortKey {
   return classSortKeys.find((key) => key === columnKey) ?? 'attention';
 }
 
-/** The address of the list in another state; what is as usual is not written out. */
-function addressOf(state: ListState): string {
-  const search = new URLSearchParams();
-  if (state.site) search.set('site', state.site);
-  if (state.verdict) search.set('verdict', state.verdict);
-  if (state.statutory) search.set('statutory', state.statutory);
-  if (state.sort !== 'attention') search.set('sort', state.sort);
-  if (state.direction !== 'desc') search.set('direction', state.direction);
-  if (state.page > 1) search.set('page', String(state.page));
-  const query = search.toString();
-  return href('/classes') + (query && `?${query}`);
-}
+const addressOf = (state: ClassesState) => href('/classes') + classesQuery(state);
 
 export default function Classes({ loaderData }: Route.ComponentProps) {
   const { rows, total, sites, state } = loaderData;
@@ -104,11 +73,22 @@ export default function Classes({ loaderData }: Route.ComponentProps) {
         noun="classes"
         hrefFor={(page) => addressOf({ ...state, page })}
       />
+      {total > 0 && (
+        <p className="no-print">
+          <Link
+            reloadDocument
+            to={href('/classes.csv') + classesQuery({ ...state, page: 1 })}
+            className="inline-flex min-h-11 items-center"
+          >
+            All {formatNoun(total, 'class', 'classes')} as CSV
+          </Link>
+        </p>
+      )}
     </>
   );
 }
 
-function Filters({ sites, state }: { sites: readonly { id: string; name: string }[]; state: ListState }) {
+function Filters({ sites, state }: { sites: readonly { id: string; name: string }[]; state: ClassesState }) {
   const isLoading = useNavigation().location?.pathname === href('/classes');
   return (
     <Form

@@ -1,5 +1,6 @@
 import { Readable } from 'node:stream';
 import { findImport, rejectedCsv } from '~/models/imports.server';
+import { attachment } from '~/services/csv-download.server';
 import { requireRole } from '~/services/viewer.server';
 import { database } from '../../db/connection';
 import type { Route } from './+types/import-rejected-csv';
@@ -16,18 +17,8 @@ export async function loader({ context, request, params }: Route.LoaderArgs) {
   return new Response(Readable.toWeb(pieces.map((text: string) => Buffer.from(text))) as ReadableStream, {
     headers: {
       'Content-Type': 'text/csv; charset=utf-8',
-      'Content-Disposition': dispositionFor(`${fileName.replace(/\.[^.]*$/, '')}-rejected.csv`),
+      'Content-Disposition': attachment(`${fileName.replace(/\.[^.]*$/, '')}-rejected.csv`),
       'X-Content-Type-Options': 'nosniff',
     },
   });
-}
-
-/** An attachment of that name, for browsers old and new (RFC 6266). */
-function dispositionFor(name: string): string {
-  const plain = name.replace(/[^\w.-]+/g, '-');
-  const encoded = encodeURIComponent(Buffer.from(name).toString()).replace(
-    /['()*]/g,
-    (sign) => `%${sign.charCodeAt(0).toString(16)}`,
-  );
-  return `attachment; filename="${plain}"; filename*=UTF-8''${encoded}`;
 }

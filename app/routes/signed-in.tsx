@@ -16,6 +16,7 @@ const sections: readonly { to: string; label: string; roles: readonly Role[] }[]
   { to: href('/classes'), label: 'Classes', roles: ['technician', 'lead', 'manager', 'admin'] },
   { to: href('/log'), label: 'Log a failure', roles: ['technician', 'lead'] },
   { to: href('/changes'), label: 'Changes', roles: ['lead', 'manager', 'admin'] },
+  { to: href('/year-ahead'), label: 'Year ahead', roles: ['lead', 'manager', 'admin'] },
   { to: href('/imports'), label: 'Imports', roles: ['lead', 'admin'] },
   { to: href('/nights'), label: 'Nights', roles: ['lead', 'admin'] },
 ];

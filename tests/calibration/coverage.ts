@@ -112,6 +112,7 @@ export function coverage(random: Random, shape: number, failures: number, runs: 
       exposure: positions * daysAYear,
     };
     const result = forecast({
+      siteOf: () => ({ siteId: 'one', siteName: 'One' }),
       positions: seen,
       now: watchedDays,
       overall,

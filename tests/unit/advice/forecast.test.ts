@@ -22,6 +22,7 @@ function inputFor(shape: number, differences: Partial<ForecastInput> = {}): Fore
   const now = positions.reduce((latest, { watchTo }) => Math.max(latest, watchTo), 0);
   return {
     positions,
+    siteOf: () => ({ siteId: 'one', siteName: 'Orrin Library' }),
     now,
     overall: countPeriod(positions, -Infinity, Infinity),
     lastYear: countPeriod(positions, now - 365, now + 1),
@@ -38,6 +39,55 @@ function forecastOf(input: ForecastInput): Forecast {
   if (findings.kind !== 'forecast') throw new Error('there is something to go by');
   return findings;
 }
+
+describe('failures to come, site by site', () => {
+  const halves = (positionId: string) =>
+    Number(positionId.split('-')[1]) % 2 === 0
+      ? { siteId: 'b', siteName: 'Tarn House' }
+      : { siteId: 'a', siteName: 'Orrin Library' };
+
+  it.each([1, 3])('are those of the class where there is one site, at shape %d', (shape) => {
+    const { sites, periods, spares, positions } = forecastOf(inputFor(shape));
+    expect(sites).toHaveLength(1);
+    expect(sites[0]).toMatchObject({ siteName: 'Orrin Library', positions, spares: spares?.spares });
+    for (const [index, { mean, low, high }] of sites[0]!.periods.entries()) {
+      expect(mean).toBeCloseTo(periods[index]!.mean, 9);
+      expect({ low, high }).toEqual({ low: periods[index]!.low, high: periods[index]!.high });
+    }
+  });
+
+  it.each([1, 3])('add up to the class in the mean, in order of name, at shape %d', (shape) => {
+    const { sites, periods } = forecastOf(inputFor(shape, { siteOf: halves }));
+    expect(sites.map(({ siteName }) => siteName)).toEqual(['Orrin Library', 'Tarn House']);
+    for (const [index, { mean, high }] of periods.entries()) {
+      const parts = sites.map((site) => site.periods[index]!);
+      // Groups of ages are formed within each site, which moves the sum by a little.
+      expect(parts.reduce((sum, part) => sum + part.mean, 0) / mean).toBeCloseTo(1, 2);
+      for (const part of parts) expect(part.high).toBeLessThan(high);
+    }
+  });
+
+  it('expect more where the old ones are', () => {
+    const positions = simulateClass(seededRandom(7), { ...usualClass, shape: 4 });
+    const now = Math.max(...positions.map(({ watchTo }) => watchTo));
+    const ages = new Map(
+      positions.map((position) => [position.id, itemsInPlace([position], now).ages[0] ?? 0]),
+    );
+    const middle = [...ages.values()].sort((a, b) => a - b)[Math.floor(ages.size / 2)]!;
+    const { sites } = forecastOf(
+      inputFor(4, {
+        siteOf: (id) =>
+          (ages.get(id) ?? 0) > middle
+            ? { siteId: 'o', siteName: 'Old' }
+            : { siteId: 'y', siteName: 'Young' },
+      }),
+    );
+    const [old, young] = sites;
+    expect(old!.periods[0]!.mean / old!.positions).toBeGreaterThan(
+      3 * (young!.periods[0]!.mean / young!.positions),
+    );
+  });
+});
 
 describe('failures to come', () => {
   it('come at the constant rate, with its exact mean and range', () => {
