@@ -31,6 +31,7 @@ export default [
     route('imports/:importId', 'routes/import-preview.tsx'),
     route('imports/:importId/rejected.csv', 'routes/import-rejected-csv.ts'),
     route('nights', 'routes/nights.tsx'),
+    route('methods', 'routes/methods.tsx'),
   ]),
   route('*', 'routes/not-found.tsx'),
 ] satisfies RouteConfig;

@@ -73,5 +73,6 @@ export const permissions: Readonly<Record<string, Permission>> = {
   'routes/import-upload.tsx': { see: keepers, act: { any: keepers } },
   'routes/import-preview.tsx': { see: keepers, act: { any: keepers } },
   'routes/import-rejected-csv.ts': { see: keepers },
+  'routes/methods.tsx': { see: signedIn },
   'routes/nights.tsx': { see: keepers },
 };

@@ -1,6 +1,7 @@
 import type { ForecastFindings } from '~/advice/forecast-findings';
 import { formatCount, formatNoun, formatPercent, formatTrimmed } from '~/format/number';
 import { FigureList } from '../figure-list';
+import { MethodLink } from '../method-link';
 import { QuestionSection } from '../question-section';
 
 type Forecast = Extract<ForecastFindings, { kind: 'forecast' }>;
@@ -27,7 +28,8 @@ export function ExpectedFailures({
       title="To come"
       words={
         <p className="text-grey text-[0.92rem]">
-          {basisWords[basis]} Ranges hold {formatPercent(confidence)} of what may happen.
+          {basisWords[basis]} <MethodLink id="forecast">Ranges</MethodLink> hold {formatPercent(confidence)}{' '}
+          of what may happen.
           {basis === 'ages' &&
             agesUnknown > 0 &&
             ` ${formatCount(agesUnknown)} of ${formatCount(positions)} ${itemPlural} are of unknown age and taken as the others.`}
@@ -41,7 +43,7 @@ export function ExpectedFailures({
             value: `${formatTrimmed(mean)} failures (${formatCount(low)} to ${formatCount(high)})`,
           })),
           {
-            name: 'Spares to hold',
+            name: <MethodLink id="spares">Spares to hold</MethodLink>,
             value:
               spares === null
                 ? 'set the lead time of spares in the class settings'

@@ -8,6 +8,7 @@ import { HazardByAgeChart } from '~/charts/hazard-by-age-chart';
 import { Estimate } from '../estimate';
 import { FigureList } from '../figure-list';
 import { formatClock, formatFixed, formatNoun, formatP, formatPercent, formatTrimmed } from '~/format/number';
+import { MethodLink } from '../method-link';
 import { QuestionSection } from '../question-section';
 import { VERDICT_COLOUR } from '../verdict';
 import { RoughIntervals } from './rough-intervals';
@@ -50,10 +51,16 @@ export function QuestionAge(props: QuestionAgeProps) {
           <RoughIntervals failures={fit.failures} />
           <FigureList
             items={[
-              { name: 'Shape β', value: <ShapeEstimate fit={fit} /> },
+              { name: <MethodLink id="life-fit">Shape β</MethodLink>, value: <ShapeEstimate fit={fit} /> },
               { name: 'Characteristic life', value: inClock(fit.kind === 'fit' ? fit.scale : null) },
-              { name: 'Mean life (MTTF)', value: <LifeLength life={meanLife} unit={unit} /> },
-              { name: 'One in ten gone by (B10)', value: <LifeLength life={tenthGone} unit={unit} /> },
+              {
+                name: <MethodLink id="life-fit">Mean life (MTTF)</MethodLink>,
+                value: <LifeLength life={meanLife} unit={unit} />,
+              },
+              {
+                name: <MethodLink id="life-fit">One in ten gone by (B10)</MethodLink>,
+                value: <LifeLength life={tenthGone} unit={unit} />,
+              },
               ...(cumulativeHazard === null
                 ? []
                 : [
@@ -70,14 +77,14 @@ export function QuestionAge(props: QuestionAgeProps) {
                     },
                   ]),
               {
-                name: 'Against a constant rate',
+                name: <MethodLink id="likelihood-ratio">Against a constant rate</MethodLink>,
                 value:
                   memorylessTest === null
                     ? 'not known'
                     : `likelihood ratio ${formatFixed(memorylessTest.statistic, 2)}, ${formatP(memorylessTest.p)}`,
               },
               {
-                name: 'Age-rank z',
+                name: <MethodLink id="age-rank">Age-rank z</MethodLink>,
                 value:
                   ageRank.z === null || ageRank.p === null
                     ? 'not known'

@@ -6,6 +6,7 @@ import type { PricedSchedule, RangedMoney, ScheduleFindings } from '~/advice/sch
 import { formatMoney } from '~/format/money';
 import { formatInterval, formatPercent } from '~/format/number';
 import { FigureList } from '../figure-list';
+import { MethodLink } from '../method-link';
 import { QuestionSection } from '../question-section';
 import { CostCurve } from './cost-curve';
 
@@ -77,16 +78,22 @@ function pricedFigures(schedule: PricedSchedule, clock: Findings['clock'], curre
   return [
     { name: 'A planned renewal', value: money(costs.plannedMinor) },
     { name: 'A failure', value: money(costs.failureMinor) },
-    { name: 'Renewed', value: policyWords[policy] },
+    {
+      name: <MethodLink id={policy}>Renewed</MethodLink>,
+      value: policyWords[policy],
+    },
     { name: 'Today costs', value: aYear(today) },
     { name: 'Run to failure', value: aYear(changes.stop.costPerYear) },
     ...(changes.best === null || best.interval === null
       ? []
       : [
-          { name: 'Best interval', value: intervalWords(best.interval, clock) },
+          {
+            name: <MethodLink id="age-replacement">Best interval</MethodLink>,
+            value: intervalWords(best.interval, clock),
+          },
           { name: 'It would cost', value: aYear(changes.best.costPerYear) },
           {
-            name: 'Saves money in',
+            name: <MethodLink id="draws">Saves money in</MethodLink>,
             value: `${formatPercent(changes.best.share)} of what the records leave possible`,
           },
         ]),

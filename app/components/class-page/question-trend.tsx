@@ -6,6 +6,7 @@ import { CumulativeFailuresChart } from '~/charts/cumulative-failures-chart';
 import { Estimate } from '../estimate';
 import { FigureList } from '../figure-list';
 import { formatClock, formatCount, formatFixed, formatP, formatTrimmed } from '~/format/number';
+import { MethodLink } from '../method-link';
 import { QuestionSection } from '../question-section';
 import { RoughIntervals } from './rough-intervals';
 import { ShapeEstimate } from './shape-estimate';
@@ -36,18 +37,18 @@ export function QuestionTrend({ conclusion, findings, figures, itemSingular }: Q
           <FigureList
             items={[
               {
-                name: 'Laplace U',
+                name: <MethodLink id="trend-laplace">Laplace U</MethodLink>,
                 value:
                   laplace === null ? 'no failure' : `${formatFixed(laplace.u, 2)}, ${formatP(laplace.p)}`,
               },
               {
-                name: 'Military-handbook test',
+                name: <MethodLink id="military-handbook">Military-handbook test</MethodLink>,
                 value:
                   militaryHandbook === null
                     ? 'no failure'
                     : `${formatFixed(militaryHandbook.statistic, 2)} on ${formatCount(militaryHandbook.degreesOfFreedom)} df, ${formatP(militaryHandbook.p)}`,
               },
-              { name: 'Slope', value: <ShapeEstimate fit={slope} /> },
+              { name: <MethodLink id="slope">Slope</MethodLink>, value: <ShapeEstimate fit={slope} /> },
               ...(exactSlopeInterval === null
                 ? []
                 : [
@@ -57,7 +58,7 @@ export function QuestionTrend({ conclusion, findings, figures, itemSingular }: Q
                     },
                   ]),
               {
-                name: 'One failure in',
+                name: <MethodLink id="mtbf">One failure in</MethodLink>,
                 value: (
                   <Estimate
                     value={overall.meanTime}
@@ -88,7 +89,7 @@ export function QuestionTrend({ conclusion, findings, figures, itemSingular }: Q
                 ? []
                 : [
                     {
-                      name: 'Last year over before',
+                      name: <MethodLink id="two-rates">Last year over before</MethodLink>,
                       value: (
                         <>
                           <Estimate
