@@ -12,6 +12,10 @@ interface PageProps {
   /** Where the name of the product leads. */
   homeTo: string;
   links: readonly SectionLink[];
+  /** Sections that find no place beside the others: they stand in the person's menu. */
+  moreLinks?: readonly SectionLink[];
+  /** Whether a page that was asked for is still not there after a second. */
+  isLate?: boolean;
   /** Who is signed in; nobody on the sign-in page. */
   person?: { name: string; role: string };
   /** A form that signs out. */
@@ -28,7 +32,9 @@ interface PageProps {
  * The frame of every page: name, main sections, person, then the page's own content in `main`. The list of
  * sections stands along the top at a desk and along the bottom of a phone.
  */
-export function Page({ homeTo, links, person, signOut, themeSwitch, search, toast, children }: PageProps) {
+export function Page(props: PageProps) {
+  const { homeTo, links, moreLinks = [], isLate = false, person, signOut } = props;
+  const { themeSwitch, search, toast, children } = props;
   const hasMenu = person !== undefined || signOut != null || themeSwitch != null;
   return (
     <div className={links.length > 0 ? 'has-sections' : undefined}>
@@ -56,12 +62,30 @@ export function Page({ homeTo, links, person, signOut, themeSwitch, search, toas
                   <span className="text-grey text-[0.9rem]">{person.role}</span>
                 </p>
               )}
+              {moreLinks.length > 0 && (
+                <ul className="border-hair mb-2 border-t pt-1">
+                  {moreLinks.map(({ to, label, current }) => (
+                    <li key={to}>
+                      <Link
+                        to={to}
+                        aria-current={current ? 'page' : undefined}
+                        className="inline-flex min-h-11 items-center"
+                      >
+                        {label}
+                      </Link>
+                    </li>
+                  ))}
+                </ul>
+              )}
               {themeSwitch}
               {signOut}
             </div>
           </details>
         )}
       </header>
+      <div className="late" data-late={isLate || undefined} role="status">
+        {isLate && <span className="sr-only">Still loading</span>}
+      </div>
       {toast}
       <main
         id="content"

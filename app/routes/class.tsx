@@ -127,6 +127,7 @@ function ClassLinks({ loaderData }: { loaderData: Loaded }) {
   const { id: classId } = head;
   const links = [
     { to: href('/classes/:classId/records', { classId }), label: 'Failures and planned work', isShown: true },
+    { to: href('/classes/:classId/positions', { classId }), label: 'Place by place', isShown: true },
     { to: href('/classes/:classId/tasks', { classId }), label: 'Planned maintenance', isShown: true },
     { to: href('/classes/:classId/clean', { classId }), label: 'Put records right', isShown: isLead },
     { to: `${href('/changes')}?class=${classId}`, label: 'Changes of this class', isShown: isDecider },

@@ -3,6 +3,11 @@ import type { Knex } from 'knex';
 /** What is different since somebody last looked, and changes to a schedule from put forward to followed up. */
 export async function up(knex: Knex): Promise<void> {
   await knex.schema.raw(`
+    -- Searching for a part of a tag over all assets; what begins with the words needs no trigrams.
+    create extension if not exists pg_trgm;
+    create index assets_tag_trigrams on assets using gin (lower(tag) gin_trgm_ops);
+    create index assets_tag_prefix on assets (lower(tag) text_pattern_ops);
+
     -- What a night made different in one class, each thing once however often that night is run.
     create table class_news (
       id uuid primary key default gen_random_uuid(),
@@ -181,6 +186,9 @@ export async function up(knex: Knex): Promise<void> {
 
 export async function down(knex: Knex): Promise<void> {
   await knex.schema.raw(`
+    drop index assets_tag_prefix;
+    drop index assets_tag_trigrams;
+    drop extension pg_trgm;
     drop table schedule_change_steps;
     drop table schedule_change_assets;
     drop table schedule_changes;

@@ -35,6 +35,9 @@ export const permissions: Readonly<Record<string, Permission>> = {
   'routes/class.tsx': { see: ofTheSite },
   'routes/class-settings.tsx': { see: keepers, act: { any: keepers } },
   'routes/class-records.tsx': { see: ofTheSite },
+  'routes/class-positions.tsx': { see: ofTheSite },
+  'routes/asset.tsx': { see: ofTheSite },
+  'routes/search.tsx': { see: signedIn },
   'routes/class-tasks.tsx': { see: ofTheSite, act: { add: keepers, describe: keepers, end: keepers } },
   'routes/class-clean.tsx': {
     see: ['lead'],
