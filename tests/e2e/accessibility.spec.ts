@@ -76,6 +76,55 @@ test.describe('for a lead', () => {
     await expectNoViolations(page);
   });
 
+  for (const path of [
+    '/since',
+    '/since?show=seen',
+    '/changes',
+    '/year-ahead?by=site',
+    '/methods',
+    '/search?q=pmp',
+  ]) {
+    test(`the page at ${path}`, async ({ page }) => {
+      await page.goto(path);
+      await expect(page.getByRole('heading', { level: 1 })).toBeVisible();
+      await expectNoViolations(page);
+    });
+  }
+
+  for (const part of ['positions', 'tasks', 'clean', 'change']) {
+    test(`the ${part} of a class`, async ({ page }) => {
+      await page.goto(`/classes/${await idOf('asset_classes', 'Circulation pump seal')}/${part}`);
+      for (const more of await page.locator('main summary').all()) await more.click();
+      await expectNoViolations(page);
+    });
+  }
+
+  test('an asset with its timeline', async ({ page }) => {
+    await page.goto(`/assets/${(await assetOfClass('Extract fan motor')).id}`);
+    await expectNoViolations(page);
+  });
+
+  test('trying a number, and a class that is not decided here', async ({ page }) => {
+    await page.goto(
+      `/classes/${await idOf('asset_classes', 'Circulation pump seal')}?try-interval=9&try-planned=200&try-failure=900`,
+    );
+    await expect(page.getByText('Replaced every 9 months')).toBeVisible();
+    await expectNoViolations(page);
+    await page.goto(`/classes/${await idOf('asset_classes', 'Lift door gear')}/change`);
+    await expect(page.getByText('Not decided here')).toBeVisible();
+    await expectNoViolations(page);
+  });
+
+  test('the preview of a correction', async ({ page }) => {
+    await page.goto(`/classes/${await idOf('asset_classes', 'Circulation pump seal')}/clean`);
+    await page.getByRole('row').nth(1).getByRole('checkbox').check();
+    await page.getByRole('radio', { name: 'They should not count (void)' }).check();
+    await page.getByLabel('To void: why they should not count').fill('logged twice');
+    await page.getByRole('button', { name: 'See what it does' }).click();
+    await expect(page.getByText('Nothing is saved yet')).toBeVisible();
+    await expectNoViolations(page);
+  });
+
   test('nights', async ({ page }) => {
     await page.goto('/nights');
     await expect(page.getByRole('table')).toBeVisible();

@@ -9,13 +9,13 @@ test.beforeAll(async () => {
   await ensureNight();
 });
 
-test('signing in leads to the classes', async ({ page }) => {
+test('signing in leads to what is new', async ({ page }) => {
   const { email, password } = personOf('manager');
   await page.goto('/');
   await page.getByLabel('E-mail').fill(email);
   await page.getByLabel('Password').fill(password);
   await page.getByRole('button', { name: 'Sign in' }).click();
-  await expect(page).toHaveURL(/\/classes$/);
+  await expect(page).toHaveURL(/\/since$/);
 });
 
 test.describe('signed in', () => {
