@@ -44,16 +44,19 @@ export function placeLabels(
     const size = sizeOf(request);
     const isFree = (box: Rect) =>
       isInside(box, bounds) && !placed.some((other) => overlaps(box, grown(other.box, 3)));
-    const own = request.spots.map((spot, index) => ({ spot, penalty: index * 0.12, isOwn: true }));
-    const options = [...own, ...gridSpots(bounds, size, request.about)];
     let best: { spot: LabelSpot; box: Rect; isOwn: boolean } | undefined;
     let bestCost = Infinity;
-    for (const { spot, penalty, isOwn } of options) {
-      if (penalty >= bestCost) continue;
+    const weigh = ({ spot, penalty, isOwn }: Option) => {
+      if (penalty >= bestCost) return;
       const box = boxAt(spot, size);
-      if (!isFree(box)) continue;
+      if (!isFree(box)) return;
       const cost = penalty + countCovered(grown(box, 2), covered, bestCost - penalty);
       if (cost < bestCost) [best, bestCost] = [{ spot, box, isOwn }, cost];
+    };
+    for (const [index, spot] of request.spots.entries()) weigh({ spot, penalty: index * 0.12, isOwn: true });
+    // The grid is hundreds of places, and no place on it is cheaper than this.
+    if (bestCost > leastGridPenalty) {
+      for (const option of gridSpots(bounds, size, request.about)) weigh(option);
     }
     if (best !== undefined) placed.push(finished(request, best.spot, best.box, best.isOwn));
   }
@@ -109,13 +112,25 @@ function boxAt({ x, y, anchor }: LabelSpot, { width, height }: Size): Rect {
   return { x: left, y: y - FONT_SIZE * 0.82, width, height };
 }
 
+interface Option {
+  spot: LabelSpot;
+  penalty: number;
+  isOwn: boolean;
+}
+
+const leastGridPenalty = 3;
+
 /** A coarse grid over the drawing, the places near what the label speaks of first. */
-function gridSpots(bounds: Rect, size: Size, about: Point) {
-  const spots: { spot: LabelSpot; penalty: number; isOwn: boolean }[] = [];
+function gridSpots(bounds: Rect, size: Size, about: Point): Option[] {
+  const spots: Option[] = [];
   for (let y = bounds.y + FONT_SIZE; y <= bounds.y + bounds.height; y += 9) {
     for (let x = bounds.x; x + size.width <= bounds.x + bounds.width; x += 12) {
       const distance = Math.hypot(x + size.width / 2 - about.x, y - about.y);
-      spots.push({ spot: { x, y, anchor: 'start' }, penalty: 3 + distance / 25, isOwn: false });
+      spots.push({
+        spot: { x, y, anchor: 'start' },
+        penalty: leastGridPenalty + distance / 25,
+        isOwn: false,
+      });
     }
   }
   return spots.sort((a, b) => a.penalty - b.penalty);

@@ -16,6 +16,7 @@ import { QuestionSchedule } from '~/components/class-page/question-schedule';
 import { RestsOn } from '~/components/class-page/rests-on';
 import type { TriedFields } from '~/components/class-page/tried-numbers';
 import { TryANumber } from '~/components/class-page/try-a-number';
+import { SheetHead, SheetSources } from '~/components/class-page/evidence-sheet';
 import { WhatToDo } from '~/components/class-page/what-to-do';
 import { EmptyState } from '~/components/empty-state';
 import { FactStrip } from '~/components/fact-strip';
@@ -30,6 +31,7 @@ import { readClassHead } from '~/models/class-list.server';
 import { dayOf } from '~/models/day-number';
 import { currentProblem } from '~/models/job-runs.server';
 import { readVerdictHistory } from '~/models/verdict-history.server';
+import { now } from '~/services/clock.server';
 import { organisation, requireViewer } from '~/services/viewer.server';
 import { database } from '../../db/connection';
 import type { Route } from './+types/class';
@@ -49,8 +51,10 @@ export async function loader({ context, request, params }: Route.LoaderArgs) {
     listAlarms(db, viewer.siteIds, { classId: params.classId }),
     readVerdictHistory(db, params.classId),
   ]);
-  const { currency, timeZone } = organisation(context);
+  const { name: organisationName, currency, timeZone } = organisation(context);
   return {
+    organisationName,
+    printedAt: now(),
     head,
     problem,
     alarms,
@@ -97,7 +101,15 @@ type Head = Loaded['head'];
 export default function ClassPage({ loaderData }: Route.ComponentProps) {
   const { head, problem, assessment, alarms, isLead, timeZone } = loaderData;
   return (
-    <article>
+    <article className="class-page">
+      {assessment !== null && (
+        <SheetHead
+          organisationName={loaderData.organisationName}
+          asOf={assessment.asOf}
+          printedAt={loaderData.printedAt}
+          timeZone={timeZone}
+        />
+      )}
       <Breadcrumbs crumbs={[{ label: 'Classes', to: href('/classes') }, { label: placesOf(head) }]} />
       {problem !== null && (
         <Notice tone="warning" title="Last night could not compute this class.">
@@ -117,6 +129,7 @@ export default function ClassPage({ loaderData }: Route.ComponentProps) {
         </Assessed>
       )}
       <ClassLinks loaderData={loaderData} />
+      <SheetSources />
     </article>
   );
 }
