@@ -83,7 +83,7 @@ export function Page(props: PageProps) {
           </details>
         )}
       </header>
-      <div className="late" data-late={isLate || undefined} role="status">
+      <div className="late" data-late={isLate || undefined} aria-live="polite">
         {isLate && <span className="sr-only">Still loading</span>}
       </div>
       {toast}

@@ -108,7 +108,8 @@ test('the records of a class list the voided ones too', async ({ page }) => {
     .getByRole('link', { name: /failures and planned work/i })
     .first()
     .click();
-  await page.getByRole('link', { name: 'Failures', exact: true }).click();
+  await page.getByLabel('What', { exact: true }).selectOption('Failures');
+  await page.getByRole('button', { name: 'Show' }).click();
   await expect(page).toHaveURL(/kind=failure/);
   const voided: unknown[] = await database()('failures as f')
     .join('asset_classes as c', 'c.id', 'f.class_id')
