@@ -80,6 +80,7 @@ export async function finishRun(db: Database, runId: string, asOf: string): Prom
                          where held.id = c.current_assessment_id and held.as_of > a.as_of)`,
     { runId },
   );
+  await writeStandings(db, runId);
   await db.raw(
     `delete from assessments a using assessments fresh
       where fresh.run_id = :runId and a.class_id = fresh.class_id and a.as_of = :asOf and a.run_id <> :runId`,
@@ -89,6 +90,37 @@ export async function finishRun(db: Database, runId: string, asOf: string): Prom
     `update job_runs set state = 'finished', finished_at = now(),
             classes_computed = (select count(*) from assessments where run_id = :runId)
       where id = :runId`,
+    { runId },
+  );
+}
+
+/** Writes down what lists show of the classes whose assessment of this run is in force. */
+async function writeStandings(db: Database, runId: string): Promise<void> {
+  const inForce = `from assessments a join asset_classes c on c.current_assessment_id = a.id where a.run_id = :runId`;
+  await db.raw(
+    `insert into class_standings (class_id, assessment_id, as_of, verdict, trend, failures, failures_last_year,
+                                  mean_time, slope, caution_codes, summary)
+     select a.class_id, a.id, a.as_of, a.verdict, a.trend, a.failures, (a.summary ->> 'failuresLastYear')::integer,
+            (a.summary ->> 'meanTime')::float8, (a.summary ->> 'slope')::float8, a.caution_codes, a.summary - 'toCome'
+       ${inForce}
+     on conflict (class_id) do update
+       set assessment_id = excluded.assessment_id, as_of = excluded.as_of, verdict = excluded.verdict,
+           trend = excluded.trend, failures = excluded.failures, failures_last_year = excluded.failures_last_year,
+           mean_time = excluded.mean_time, slope = excluded.slope, caution_codes = excluded.caution_codes,
+           summary = excluded.summary`,
+    { runId },
+  );
+  await db.raw(`delete from class_outlooks where class_id in (select a.class_id ${inForce})`, { runId });
+  await db.raw(
+    `insert into class_outlooks (class_id, site_id, months, positions, mean, low, high, spares)
+     select a.class_id, y."siteId", p.months, y.positions, (p.period ->> 'mean')::float8,
+            (p.period ->> 'low')::integer, (p.period ->> 'high')::integer, y.spares
+       from assessments a
+       join asset_classes c on c.current_assessment_id = a.id
+       cross join lateral jsonb_to_recordset(a.summary -> 'toCome')
+         as y("siteId" uuid, positions integer, m1 jsonb, m3 jsonb, m12 jsonb, spares integer)
+       cross join lateral (values (1, y.m1), (3, y.m3), (12, y.m12)) as p(months, period)
+      where a.run_id = :runId`,
     { runId },
   );
 }

@@ -43,9 +43,9 @@ const orderBy: Record<ClassSortKey, string> = {
   verdict: `array_position(array['wear-out', 'early-life', 'undecided', 'memoryless'], a.verdict)`,
   trend: `array_position(array['rising', 'falling', 'unclear', 'level'], a.trend)`,
   failures: 'a.failures',
-  recent: `(a.summary ->> 'failuresLastYear')::integer`,
-  mtbf: `(a.summary ->> 'meanTime')::float8`,
-  slope: `(a.summary ->> 'slope')::float8`,
+  recent: 'a.failures_last_year',
+  mtbf: 'a.mean_time',
+  slope: 'a.slope',
 };
 
 const rowSchema = z.object({
@@ -72,12 +72,13 @@ export async function listClasses(
   filter: ClassListFilter,
 ): Promise<{ rows: ClassListRow[]; total: number }> {
   const { where, bindings } = conditions(siteIds, filter);
-  const from = `from asset_classes c left join assessments a on a.id = c.current_assessment_id ${where}`;
+  const from = `from asset_classes c
+    left join class_standings a on a.class_id = c.id and a.assessment_id = c.current_assessment_id ${where}`;
   const direction = filter.direction === 'asc' ? 'asc' : 'desc';
   const page = await db.raw<{ rows: unknown[] }>(
     `select c.id, c.name, c.statutory, c.endangers_people as "endangersPeople",
             a.as_of as "asOf", a.verdict, a.trend, a.failures,
-            a.caution_codes as "cautionCodes", a.summary - 'toCome' as summary
+            a.caution_codes as "cautionCodes", a.summary
        ${from}
       order by ${orderBy[filter.sort]} ${direction} nulls last, a.failures desc nulls last, lower(c.name)
       limit :limit offset :offset`,
@@ -100,7 +101,7 @@ function conditions(siteIds: readonly string[] | 'all', { siteId, verdict, statu
     parts.push(hasAssetAt(':siteId'));
     bindings.siteId = siteId;
   }
-  if (verdict === 'not-assessed') parts.push('a.id is null');
+  if (verdict === 'not-assessed') parts.push('a.class_id is null');
   else if (verdict !== undefined) {
     parts.push('a.verdict = :verdict');
     bindings.verdict = verdict;

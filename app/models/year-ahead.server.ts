@@ -52,21 +52,17 @@ const orderBy: Record<YearAheadSort, string> = {
 
 function rowsOf({ months, by, siteId }: YearAheadFilter) {
   const ofSite = by === 'site' || siteId !== undefined;
-  const conditions = [ofSite ? 'x."siteId" is not null' : 'x."siteId" is null'];
-  if (siteId !== undefined) conditions.push('x."siteId" = :siteId::uuid');
+  const conditions = [`o.months = ${months}`, ofSite ? 'o.site_id is not null' : 'o.site_id is null'];
+  if (siteId !== undefined) conditions.push('o.site_id = :siteId::uuid');
   return {
     sql: `
-      select c.id as "classId", c.name as "className", c.item_plural as "itemPlural", s.name as "siteName", x.positions,
-             (x.period ->> 'mean')::float8 as mean, (x.period ->> 'low')::integer as low,
-             (x.period ->> 'high')::integer as high, x.spares, c.spares_lead_time_days as "leadTimeDays",
-             round(((x.period ->> 'mean')::float8 * c.failure_cost_minor)::numeric)::bigint as "costMinor"
-        from asset_classes c
-        join assessments a on a.id = c.current_assessment_id
-        cross join lateral (
-          select y."siteId", y.positions, y.m${months} as period, y.spares
-            from jsonb_to_recordset(a.summary -> 'toCome')
-              as y("siteId" uuid, positions integer, m1 jsonb, m3 jsonb, m12 jsonb, spares integer)) x
-        left join sites s on s.id = x."siteId"
+      select c.id as "classId", c.name as "className", c.item_plural as "itemPlural", s.name as "siteName",
+             o.positions, o.mean, o.low, o.high, o.spares, c.spares_lead_time_days as "leadTimeDays",
+             round((o.mean * c.failure_cost_minor)::numeric)::bigint as "costMinor"
+        from class_outlooks o
+        join class_standings st on st.class_id = o.class_id
+        join asset_classes c on c.id = o.class_id and c.current_assessment_id = st.assessment_id
+        left join sites s on s.id = o.site_id
        where ${conditions.join(' and ')}`,
     bindings: siteId === undefined ? {} : { siteId },
   };

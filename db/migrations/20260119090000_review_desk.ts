@@ -8,6 +8,38 @@ export async function up(knex: Knex): Promise<void> {
     create index assets_tag_trigrams on assets using gin (lower(tag) gin_trgm_ops);
     create index assets_tag_prefix on assets (lower(tag) text_pattern_ops);
 
+    -- What is in force of each class, as lists show and sort it: looked up without wading through all nights.
+    create table class_standings (
+      class_id uuid primary key references asset_classes (id) on delete cascade,
+      assessment_id uuid not null references assessments (id) on delete cascade,
+      as_of date not null,
+      verdict text not null,
+      trend text not null,
+      failures integer not null,
+      failures_last_year integer not null,
+      mean_time float8,
+      slope float8,
+      caution_codes text[] not null,
+      summary jsonb not null
+    );
+    create index class_standings_assessment on class_standings (assessment_id);
+
+    -- Failures to come of the whole class (no site) or of one site, as of the night in force.
+    create table class_outlooks (
+      class_id uuid not null references class_standings (class_id) on delete cascade,
+      site_id uuid references sites (id) on delete cascade,
+      months smallint not null check (months in (1, 3, 12)),
+      positions integer not null,
+      mean float8 not null,
+      low integer not null,
+      high integer not null,
+      spares integer
+    );
+    create unique index class_outlooks_class on class_outlooks (class_id, months) where site_id is null;
+    create unique index class_outlooks_class_site on class_outlooks (class_id, site_id, months)
+      where site_id is not null;
+    create index class_outlooks_site on class_outlooks (site_id, months);
+
     -- What a night made different in one class, each thing once however often that night is run.
     create table class_news (
       id uuid primary key default gen_random_uuid(),
@@ -200,5 +232,7 @@ export async function down(knex: Knex): Promise<void> {
     alter table maintenance_tasks drop column replaces_task_id, drop column version;
     drop table class_news_seen;
     drop table class_news;
+    drop table class_outlooks;
+    drop table class_standings;
   `);
 }

@@ -128,10 +128,23 @@ function reportPlans(log: string): void {
   }
 }
 
+/** Two months of earlier nights, without their details: a page must find the one in force among them. */
+async function addEarlierNights(db: Database): Promise<void> {
+  await db.raw(
+    `with runs as (
+       insert into job_runs (job, as_of, state, finished_at)
+       select 'nightly', '${firstNight}'::date - n, 'finished', now() from generate_series(1, 60) n returning id, as_of)
+     insert into assessments (run_id, class_id, as_of, verdict, trend, failures, caution_codes, summary, detail)
+     select r.id, a.class_id, r.as_of, a.verdict, a.trend, a.failures, a.caution_codes, '{}', '{}'
+       from runs r, assessments a`,
+  );
+}
+
 async function measurePages({ database: db, url }: TestDatabase, logFile: string): Promise<void> {
   await fillEstate(db, Number(values.classes), 45);
   const personId = await addPerson(db, { email: 'lead@bench.example', roles: ['lead'] });
   await runNightly(db, { asOf: firstNight, organisation: await readOrganisation(db) });
+  await addEarlierNights(db);
   await db.raw('analyze');
   const counted = await db.raw<{ rows: { count: number }[] }>('select count(*) from failures');
   console.log(`${values.classes} classes, ${counted.rows[0]!.count} failures.\n`);

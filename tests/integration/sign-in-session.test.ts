@@ -165,9 +165,9 @@ describe('what a person may see', () => {
   it.each<[Role[], string]>([
     [['technician'], '/log'],
     [['admin'], '/imports'],
-    [['lead'], '/classes'],
-    [['manager'], '/classes'],
-    [['technician', 'lead'], '/classes'],
+    [['lead'], '/since'],
+    [['manager'], '/since'],
+    [['technician', 'lead'], '/since'],
     [['technician', 'admin'], '/log'],
   ])('begins, for %j, at %s', async (roles, first) => {
     const { cookie } = await signedIn(roles);
