@@ -152,6 +152,7 @@ export async function readClassHead(
   siteIds: readonly string[] | 'all',
   classId: string,
 ): Promise<ClassHead | null> {
+  if (!z.uuid().safeParse(classId).success) return null;
   const { rows } = await db.raw<{ rows: ClassHead[] }>(
     `select c.id, c.name, c.item_singular as "itemSingular", c.item_plural as "itemPlural",
             c.statutory, c.endangers_people as "endangersPeople",

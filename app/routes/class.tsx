@@ -1,5 +1,6 @@
 import type { ReactNode } from 'react';
 import { href, Link } from 'react-router';
+import { z } from 'zod';
 import { cautionNames } from '~/advice/caution-names';
 import { classFigures } from '~/advice/class-figures';
 import { changingActions } from '~/advice/proposal';
@@ -42,15 +43,17 @@ export const meta: Route.MetaFunction = ({ loaderData }) => [
 
 export async function loader({ context, request, params }: Route.LoaderArgs) {
   const viewer = requireViewer(context, request);
+  if (!z.uuid().safeParse(params.classId).success) throw notFound();
   const db = database();
-  const head = await readClassHead(db, viewer.siteIds, params.classId);
-  if (head === null) throw new Response('There is no such class.', { status: 404 });
-  const [assessment, problem, alarms, history] = await Promise.all([
+  // All at once: what the viewer may not see is thrown away with the answer below.
+  const [head, assessment, problem, alarms, history] = await Promise.all([
+    readClassHead(db, viewer.siteIds, params.classId),
     currentAssessment(db, params.classId),
     currentProblem(db, params.classId),
     listAlarms(db, viewer.siteIds, { classId: params.classId }),
     readVerdictHistory(db, params.classId),
   ]);
+  if (head === null) throw notFound();
   const { name: organisationName, currency, timeZone } = organisation(context);
   return {
     organisationName,
@@ -69,6 +72,8 @@ export async function loader({ context, request, params }: Route.LoaderArgs) {
   };
 }
 
+const notFound = () => new Response('There is no such class.', { status: 404 });
+
 /** The numbers that the address asks to try; null where it asks nothing. */
 function askedOf(request: Request): TriedFields | null {
   const search = new URL(request.url).searchParams;
@@ -83,7 +88,19 @@ function view({ asOf, findings, conclusion }: Assessment) {
   return {
     asOf,
     conclusion,
-    findings: { ...findings, trend: { ...findings.trend, failureExposures: [] } },
+    findings: {
+      clock: findings.clock,
+      extent: findings.extent,
+      leftOut: findings.leftOut,
+      rate: findings.rate,
+      trend: { ...findings.trend, failureExposures: [] },
+      life: findings.life,
+      ageRank: { ...findings.ageRank, marks: [] },
+      modes: findings.modes,
+      schedule: findings.schedule,
+      forecast:
+        findings.forecast.kind === 'forecast' ? { ...findings.forecast, sites: [] } : findings.forecast,
+    },
     figures: classFigures(findings),
     ageRank: {
       ...ageRank,

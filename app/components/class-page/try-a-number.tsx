@@ -33,9 +33,11 @@ export function TryANumber(props: TryANumberProps) {
   const [fields, setFields] = useState<TriedFields>(asked ?? night);
   const shown = useDeferredValue(fields);
   const isLive = useIsLive();
+  // A price takes a moment and a chart to draw: nothing is priced before somebody opens this.
+  const [isOpen, setIsOpen] = useState(asked !== null);
   if (schedule.basis === null) return null;
-  const tried = tryNumbers(shown, { schedule, clock, currency });
-  const errors = tried.kind === 'errors' ? tried.errors : {};
+  const tried = isOpen ? tryNumbers(shown, { schedule, clock, currency }) : null;
+  const errors = tried?.kind === 'errors' ? tried.errors : {};
   // What nobody has filled in yet is not wrong yet.
   const errorOf = (name: keyof TriedFields) =>
     asked !== null || fields[name] !== '' ? errors[name] : undefined;
@@ -44,7 +46,7 @@ export function TryANumber(props: TryANumberProps) {
     setFields((held) => ({ ...held, [name]: value }));
   return (
     <div className="no-print mt-6">
-      <Disclosure summary="Try a number" open={asked !== null}>
+      <Disclosure summary="Try a number" open={asked !== null} onToggle={setIsOpen}>
         <Form action={`${href('/classes/:classId', { classId })}#try-a-number`} id="try-a-number">
           <div className="grid gap-x-6 lg:grid-cols-3">
             <Tryable
@@ -81,7 +83,7 @@ export function TryANumber(props: TryANumberProps) {
           )}
         </Form>
         <Result {...props} tried={tried}>
-          {mayPutForward && tried.kind === 'priced' && tried.interval !== schedule.current.interval && (
+          {mayPutForward && tried?.kind === 'priced' && tried.interval !== schedule.current.interval && (
             <p className="mt-4">
               <LinkButton
                 tone="quiet"
@@ -165,9 +167,13 @@ function Tryable({ name, label, hint, value, onChange, error, slider }: TryableP
   );
 }
 
-function Result({ tried, children, ...props }: TryANumberProps & { tried: Tried; children: ReactNode }) {
+function Result({
+  tried,
+  children,
+  ...props
+}: TryANumberProps & { tried: Tried | null; children: ReactNode }) {
   const { clock, currency, itemPlural } = props;
-  if (tried.kind === 'errors') return null;
+  if (tried === null || tried.kind === 'errors') return null;
   if (tried.kind === 'no-price') {
     return <p className="mt-3">These numbers are too extreme for a price that could be told.</p>;
   }
