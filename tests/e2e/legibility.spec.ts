@@ -64,3 +64,16 @@ for (const width of widths) {
     }
   });
 }
+
+for (const name of [
+  'Circulation pump seal',
+  'Lift door gear',
+  'Boiler ignition electrode',
+  'Corridor lamp',
+]) {
+  test(`the page of ${name} prints as a sheet of two pages`, async ({ page }) => {
+    await page.goto(`/classes/${await idOf('asset_classes', name)}`);
+    const pdf = await page.pdf({ preferCSSPageSize: true });
+    expect(pdf.toString('latin1').match(/\/Type\s*\/Page\b(?!s)/g)).toHaveLength(2);
+  });
+}
