@@ -1,5 +1,4 @@
 import { randomBytes } from 'node:crypto';
-import { PassThrough } from 'node:stream';
 import { createReadableStreamFromReadable } from '@react-router/node';
 import { isbot } from 'isbot';
 import { renderToPipeableStream } from 'react-dom/server';
@@ -11,6 +10,7 @@ import {
 } from 'react-router';
 import { DocumentContext } from './document-context';
 import { faultReferenceContext, logFault } from './services/fault-reference.server';
+import { gatherChunks } from './services/gather-chunks.server';
 import { isSecure } from './services/request-origin.server';
 import { setSecurityHeaders } from './services/security-headers.server';
 import { settings } from './services/settings.server';
@@ -48,7 +48,7 @@ export default async function handleRequest(
     let answerStatus = status;
     const answer = () => {
       answered = true;
-      const body = new PassThrough({ final: (done) => (clearTimeout(deadline), done()) });
+      const body = gatherChunks().on('finish', () => clearTimeout(deadline));
       resolve(new Response(createReadableStreamFromReadable(body), { status: answerStatus, headers }));
       pipe(body);
     };

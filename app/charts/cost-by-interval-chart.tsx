@@ -125,7 +125,7 @@ function tableFor(
   { currency, intervalUnit }: CostByIntervalData,
 ): ChartTable {
   const money = (value: number) => formatMoney(value, currency, 'never');
-  const rows = spreadRows(curve, 30).map(({ interval, cost, low, high }) => [
+  const rows = spreadRows(curve, 15).map(({ interval, cost, low, high }) => [
     formatTrimmed(interval),
     money(cost),
     formatInterval(low, high, money),

@@ -95,7 +95,7 @@ function tableFor({ bands, curve }: Usable, ageUnit: string, rateUnit: string): 
   if (bands.length === 0) {
     return {
       columns: [`Age, ${ageUnit}`, `Fitted, ${rateUnit}`],
-      rows: spreadRows(curve, 20).map(({ age, rate }) => [formatTrimmed(age), formatNumber(rate)]),
+      rows: spreadRows(curve, 12).map(({ age, rate }) => [formatTrimmed(age), formatNumber(rate)]),
     };
   }
   return {

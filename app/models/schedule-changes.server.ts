@@ -18,7 +18,7 @@ import {
 import { findRenewingTask, putIntoEffect, takeOutOfEffect } from './schedule-effect.server';
 
 export interface ChangeListFilter {
-  /** Waiting for somebody, in effect and followed, or past. */
+  /** Waiting for somebody, waiting for a decision, in effect and followed, or past. */
   group?: ChangeGroup;
   classId?: string;
   /** Only of classes with an asset at this site. */
@@ -28,11 +28,12 @@ export interface ChangeListFilter {
   pageSize: number;
 }
 
-export const changeGroups = ['open', 'followed', 'past'] as const;
+export const changeGroups = ['open', 'to-decide', 'followed', 'past'] as const;
 export type ChangeGroup = (typeof changeGroups)[number];
 
 const statesOf: Record<ChangeGroup, readonly ChangeState[]> = {
   open: openStates,
+  'to-decide': ['put-forward'],
   followed: ['approved'],
   past: ['declined', 'withdrawn', 'taken-back'],
 };

@@ -71,6 +71,7 @@ export default function Changes({ loaderData }: Route.ComponentProps) {
           options={[
             { value: '', label: 'All' },
             { value: 'open', label: 'Waiting' },
+            { value: 'to-decide', label: 'Waiting for a decision' },
             { value: 'followed', label: 'In effect' },
             { value: 'past', label: 'Past' },
           ]}

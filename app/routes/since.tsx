@@ -1,5 +1,6 @@
 import { Form, href, Link } from 'react-router';
 import { z } from 'zod';
+import { changeInWords } from '~/advice/change-words';
 import { Button } from '~/components/button';
 import { EmptyState } from '~/components/empty-state';
 import { NewsList } from '~/components/since/news-list';
@@ -9,6 +10,7 @@ import { formatCalendarDate, formatDateTime } from '~/format/date';
 import { formatNoun } from '~/format/number';
 import { listNews, markSeen, markUnseen, type NewsOfClass } from '~/models/class-news.server';
 import { lastNight, type LastNight } from '~/models/job-runs.server';
+import type { ChangeRow } from '~/models/schedule-change';
 import { listChanges } from '~/models/schedule-changes.server';
 import { now } from '~/services/clock.server';
 import { redirectWithToast } from '~/services/flash.server';
@@ -18,6 +20,8 @@ import { database } from '../../db/connection';
 import type { Route } from './+types/since';
 
 const pageSize = 30;
+/** So many changes that wait are named at once: a manager opens one with a tap and decides with the next. */
+const mostWaiting = 5;
 const searchSchema = z.object({
   show: z.enum(['seen']).optional().catch(undefined),
   page: z.coerce.number().int().min(1).max(100_000).catch(1),
@@ -43,8 +47,8 @@ export async function loader({ context, request }: Route.LoaderArgs) {
     listNews(db, viewer.id, { seen, page, pageSize }),
     lastNight(db),
     viewer.roles.includes('manager')
-      ? listChanges(db, { group: 'open', page: 1, pageSize: 1 }).then(({ total }) => total)
-      : 0,
+      ? listChanges(db, { group: 'to-decide', page: 1, pageSize: mostWaiting })
+      : null,
   ]);
   const { currency, timeZone } = organisation(context);
   return { ...news, night, waiting, seen, page, currency, timeZone };
@@ -88,16 +92,7 @@ export default function Since({ loaderData }: Route.ComponentProps) {
     <>
       <h1>{seen ? 'What you have seen' : 'Since you last looked'}</h1>
       <NightLine night={night} timeZone={timeZone} />
-      {waiting > 0 && !seen && (
-        <Notice
-          tone="warning"
-          title={`${formatNoun(waiting, 'change')} ${waiting === 1 ? 'waits' : 'wait'} for you`}
-        >
-          <p>
-            <Link to={`${href('/changes')}?group=open`}>Look and decide</Link>
-          </p>
-        </Notice>
-      )}
+      {waiting !== null && waiting.total > 0 && !seen && <Waiting waiting={waiting} />}
       {classes.length === 0 ? (
         <Nothing seen={seen} night={night} />
       ) : (
@@ -127,6 +122,33 @@ export default function Since({ loaderData }: Route.ComponentProps) {
         </Link>
       </p>
     </>
+  );
+}
+
+function Waiting({ waiting: { rows, total } }: { waiting: { rows: readonly ChangeRow[]; total: number } }) {
+  return (
+    <Notice
+      tone="warning"
+      title={`${formatNoun(total, 'change')} ${total === 1 ? 'waits' : 'wait'} for a decision`}
+    >
+      <ul>
+        {rows.map((change) => (
+          <li key={change.id}>
+            <Link
+              to={href('/changes/:changeId', { changeId: change.id })}
+              className="inline-flex min-h-11 items-center"
+            >
+              {change.className}: {changeInWords(change, change.clock)}
+            </Link>
+          </li>
+        ))}
+      </ul>
+      {total > rows.length && (
+        <p>
+          <Link to={`${href('/changes')}?group=to-decide`}>All that wait</Link>
+        </p>
+      )}
+    </Notice>
   );
 }
 

@@ -142,9 +142,8 @@ test('from an alarm in the morning to a schedule that changed, and to what came 
 
   await test.step('the manager declines', async () => {
     const page = await server.signIn(browser, manager);
-    await page.getByRole('link', { name: 'Look and decide' }).click();
-    await expect(page).toHaveURL(/\/changes/);
-    await page.getByRole('link', { name: 'Feed pump bearing' }).click();
+    await page.getByRole('link', { name: /^Feed pump bearing: Shorten/ }).click();
+    await expect(page).toHaveURL(/\/changes\//);
     await page.getByText('Decline', { exact: true }).first().click();
     await page.getByLabel('Why not').fill('Too short for the contractor; propose ten months.');
     await page.getByRole('button', { name: 'Decline' }).click();
