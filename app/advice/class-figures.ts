@@ -30,7 +30,7 @@ export interface ClassFigures {
 /** Clock units in one unit of exposure as it is spoken of. */
 export const exposureUnits = { 'calendar-days': 365.25, 'operating-hours': 1000 } as const;
 
-const curvePoints = 100;
+const curvePoints = 50;
 
 export function classFigures({ clock, trend, life }: Findings): ClassFigures {
   const unit = exposureUnits[clock];
