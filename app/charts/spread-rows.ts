@@ -1,4 +1,4 @@
-const MOST_ROWS = 120;
+const MOST_ROWS = 40;
 
 /** At most so many rows of a long table, evenly spread, always the last one. */
 export function spreadRows<Row>(rows: readonly Row[], most = MOST_ROWS): readonly Row[] {

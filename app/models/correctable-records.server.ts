@@ -1,7 +1,7 @@
 import type { Database } from '../../db/connection';
 import type { CorrectableSort } from './correctable-sorts';
 import type { Effect, OutsideCause } from './failure';
-import type { SeenRecord } from './record-corrections.server';
+import type { SeenRecord } from './correction-plan.server';
 
 /** Which of a class's failures to show; all of it is optional. Days are 'YYYY-MM-DD', both taken in. */
 export interface CorrectableFilter {
@@ -58,6 +58,8 @@ function conditions(classId: string, filter: CorrectableFilter) {
 const orderBy: Record<CorrectableSort, string> = {
   day: 'f.failed_on',
   tag: 'lower(a.tag)',
+  mode: 'lower(m.name)',
+  fitted: 'f.item_fitted_on',
   logged: 'f.logged_at',
 };
 
@@ -82,7 +84,7 @@ export async function listCorrectable(
             m.name as "modeName", f.effect, f.outside_cause as "outsideCause", f.item_fitted_on as "itemFittedOn",
             f.item_age as "itemAge", f.note, f.void_reason as "voidReason", p.name as "loggedByName"
        from ${tables} ${where}
-      order by ${orderBy[sort]} ${direction === 'asc' ? 'asc' : 'desc'}, f.failed_on desc, f.id
+      order by ${orderBy[sort]} ${direction === 'asc' ? 'asc' : 'desc'} nulls last, f.failed_on desc, f.id
       limit :limit offset :offset`,
     { ...bindings, limit: pageSize, offset: (page - 1) * pageSize },
   );
@@ -104,6 +106,15 @@ export async function everyCorrectable(
   const { rows } = await db.raw<{ rows: SeenRecord[] }>(
     `select f.id, f.version from ${tables} ${where} order by f.id limit :limit`,
     { ...bindings, limit: most + 1 },
+  );
+  return rows;
+}
+
+/** Some failures of a class as they stand now; ids that are no failure of it are passed over. */
+export async function seenNow(db: Database, classId: string, ids: readonly string[]): Promise<SeenRecord[]> {
+  const { rows } = await db.raw<{ rows: SeenRecord[] }>(
+    `select id, version from failures where class_id = :classId and id = any(:ids::uuid[]) order by id`,
+    { classId, ids: [...ids] },
   );
   return rows;
 }

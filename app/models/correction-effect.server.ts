@@ -7,8 +7,9 @@ import type { Database } from '../../db/connection';
 import { readClassRecords } from './class-records.server';
 import { layOutClass } from './lay-out-class';
 import type { Organisation } from './organisation.server';
-import type { CorrectedRecord } from './record-corrections.server';
-import { writeCorrected } from './record-corrections.server';
+import type { CorrectedRecord } from './correction-plan.server';
+import { writeRecords } from './correction-write.server';
+import { writesOf } from './record-corrections.server';
 
 /** What people decide by, of a class as it stands in the records. */
 export interface ClassStanding {
@@ -18,6 +19,14 @@ export interface ClassStanding {
   readonly fit: Findings['life']['fit'];
   readonly proposal: string;
   readonly cautions: Conclusion['cautions'][number]['code'][];
+}
+
+/** The same class on its records as they are and as they would be. */
+export interface CorrectionEffect {
+  /** The day both are judged as of. */
+  readonly asOf: string;
+  readonly before: ClassStanding;
+  readonly after: ClassStanding;
 }
 
 type Settings = Pick<Organisation, 'timeZone' | 'currency' | 'serviceLevel'>;
@@ -33,16 +42,12 @@ export async function effectOfCorrection(
   classId: string,
   records: readonly CorrectedRecord[],
   options: { asOf: string; organisation: Settings; personId: string; now: Date },
-): Promise<{ before: ClassStanding; after: ClassStanding }> {
+): Promise<CorrectionEffect> {
   const transaction = await db.transaction();
   try {
     const before = await standingOf(transaction, classId, options);
-    await writeCorrected(
-      transaction,
-      records.filter(({ refusal }) => refusal === null),
-      options,
-    );
-    return { before, after: await standingOf(transaction, classId, options) };
+    await writeRecords(transaction, writesOf(records, options), options.now);
+    return { asOf: options.asOf, before, after: await standingOf(transaction, classId, options) };
   } finally {
     await transaction.rollback();
   }

@@ -55,13 +55,16 @@ export async function logFailure(db: Database, input: LogFailureInput): Promise<
 }
 
 async function logWithinTransaction(trx: Database, input: LogFailureInput): Promise<LogFailureResult> {
-  const { entry, personId, now, today } = input;
-  const asset = await lockAsset(trx, entry.assetId);
+  const { personId, now, today } = input;
+  const asset = await lockAsset(trx, input.entry.assetId);
+  const modeId = await presentMode(trx, asset, input.entry.modeId);
+  const entry = modeId === undefined ? input.entry : { ...input.entry, modeId };
   const stored = await findFailure(trx, entry.id);
-  if (stored) return answerStored(stored, input);
+  if (stored) return answerStored(stored, { ...input, entry });
 
-  const refusal = refuseDates(asset, entry, { today, now }) ?? (await refuseMode(trx, asset, entry.modeId));
+  const refusal = refuseDates(asset, entry, { today, now });
   if (refusal) return { outcome: 'refused', refusal };
+  if (modeId === undefined) return { outcome: 'refused', refusal: { code: 'mode-of-another-class' } };
 
   const perhapsSame = await findPerhapsSame(trx, asset, input);
   if (perhapsSame.some(({ id }) => !input.seenIds?.includes(id))) {
@@ -123,14 +126,21 @@ async function lockAsset(trx: Database, assetId: string): Promise<Asset> {
   return asset;
 }
 
-async function refuseMode(
+/**
+ * The mode a failure is logged with: what was chosen before two modes were merged counts as the one that stayed.
+ * Undefined where it is no mode of the asset's class. Nobody can merge it until the transaction ends.
+ */
+async function presentMode(
   trx: Database,
   asset: Asset,
   modeId: string | null,
-): Promise<FailureRefusal | null> {
+): Promise<string | null | undefined> {
   if (modeId === null) return null;
-  const found = await trx('failure_modes').where({ id: modeId, class_id: asset.classId }).first('id');
-  return found ? null : { code: 'mode-of-another-class' };
+  const mode = await trx('failure_modes')
+    .where({ id: modeId, class_id: asset.classId })
+    .forShare()
+    .first<{ id: string; mergedInto: string | null } | undefined>({ id: 'id', mergedInto: 'merged_into' });
+  return mode && (mode.mergedInto ?? mode.id);
 }
 
 /**

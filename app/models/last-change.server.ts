@@ -57,3 +57,18 @@ export async function listChangesOf(
     });
   return rows.map((row) => changeSchema.parse(row));
 }
+
+/** What was changed last about each of some records, by their ids; records nobody changed are left out. */
+export async function listLastChanges(
+  db: Database,
+  { subject, subjectIds }: { subject: string; subjectIds: readonly string[] },
+): Promise<Map<string, RecordChange>> {
+  const { rows } = await db.raw<{ rows: { id: string }[] }>(
+    `select distinct on (e.subject_id) e.subject_id as id, e.action, p.name as "personName", e.at, e.before, e.after
+       from audit_entries e left join people p on p.id = e.person_id
+      where e.subject = :subject and e.subject_id = any(:subjectIds)
+      order by e.subject_id, e.id desc`,
+    { subject, subjectIds: [...subjectIds] },
+  );
+  return new Map(rows.map(({ id, ...row }) => [id, changeSchema.parse(row)]));
+}

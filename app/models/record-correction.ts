@@ -1,6 +1,9 @@
 import { z } from 'zod';
 import { effects, outsideCauses } from './failure';
 
+/** The most failures corrected in one go. */
+export const mostCorrected = 5000;
+
 /** One thing put right on some failures at once. */
 export const correctionSchema = z.discriminatedUnion('kind', [
   z.object({ kind: z.literal('void'), reason: z.string().min(1).max(300) }),
@@ -57,4 +60,24 @@ export function corrected(fields: CorrectableFields, correction: Correction): Co
         ? fields
         : { ...fields, itemFittedOn: correction.fittedOn, itemAge: null };
   }
+}
+
+/** The parts in which two states of a failure differ. */
+export function changedParts(
+  before: CorrectableFields,
+  after: CorrectableFields,
+): (keyof CorrectableFields & string)[] {
+  return correctableFieldsSchema.keyof().options.filter((part) => before[part] !== after[part]);
+}
+
+/**
+ * Whether the days of a failure have to fit its asset anew: where one of them is put right, and where it comes to count
+ * again. Records taken in long ago that would be refused today can still be given a mode.
+ */
+export function asksForDates(before: CorrectableFields, after: CorrectableFields): boolean {
+  const parts = changedParts(before, after);
+  return (
+    parts.some((part) => part === 'failedOn' || part === 'failedAt' || part === 'itemFittedOn') ||
+    (before.voidReason !== null && after.voidReason === null)
+  );
 }

@@ -1,179 +1,33 @@
 import { z } from 'zod';
 import type { Database } from '../../db/connection';
-import { writeAudit } from './audit.server';
-import { effects, outsideCauses } from './failure';
-import { refuseDates, type FailureRefusal } from './failure-refusals';
-import { corrected, type CorrectableFields, type Correction } from './record-correction';
-
-/** The most failures corrected in one go. */
-export const mostCorrected = 5000;
-
-/** A failure as the person saw it. */
-export interface SeenRecord {
-  readonly id: string;
-  readonly version: number;
-}
-
-/** A failure before and after a correction, or why it cannot be corrected. */
-export interface CorrectedRecord {
-  readonly id: string;
-  readonly tag: string;
-  readonly siteName: string;
-  readonly itemSingular: string;
-  readonly version: number;
-  readonly before: CorrectableFields;
-  readonly after: CorrectableFields;
-  readonly refusal: FailureRefusal | null;
-}
-
-/** Somebody changed a record after the person saw it. */
-export interface ChangedMeanwhile {
-  readonly id: string;
-  readonly tag: string;
-  readonly version: number;
-  readonly personName: string | null;
-  readonly at: Date | null;
-}
-
-/** What a correction comes to, record by record; those it leaves as they are stand in neither list. */
-export interface CorrectionPlan {
-  readonly records: CorrectedRecord[];
-  readonly unchanged: number;
-  readonly meanwhile: ChangedMeanwhile[];
-}
-
-const rowSchema = z.object({
-  id: z.string(),
-  version: z.number(),
-  tag: z.string(),
-  siteName: z.string(),
-  itemSingular: z.string(),
-  inServiceOn: z.string(),
-  watchedUntil: z.string().nullable(),
-  retiredOn: z.string().nullable(),
-  failedOn: z.string(),
-  failedAt: z.date().nullable(),
-  modeId: z.string().nullable(),
-  effect: z.enum(effects),
-  outsideCause: z.enum(outsideCauses).nullable(),
-  itemFittedOn: z.string().nullable(),
-  itemAge: z.number().nullable(),
-  voidReason: z.string().nullable(),
-});
-
-interface Present {
-  now: Date;
-  /** The day it is, in the organisation's zone. */
-  today: string;
-}
-
-/**
- * What a correction would do to some failures of a class. Ids that are no failure of it are passed over.
- *
- * @param lock whether the records are to stay as they are until the transaction ends.
- */
-export async function planCorrection(
-  db: Database,
-  classId: string,
-  { seen, correction, lock = false }: { seen: readonly SeenRecord[]; correction: Correction; lock?: boolean },
-  present: Present,
-): Promise<CorrectionPlan> {
-  const { rows } = await db.raw<{ rows: unknown[] }>(
-    `select f.id, f.version, a.tag, s.name as "siteName", c.item_singular as "itemSingular",
-            a.in_service_on as "inServiceOn", a.watched_until as "watchedUntil", a.retired_on as "retiredOn",
-            f.failed_on as "failedOn", f.failed_at as "failedAt", f.mode_id as "modeId", f.effect,
-            f.outside_cause as "outsideCause", f.item_fitted_on as "itemFittedOn", f.item_age as "itemAge",
-            f.void_reason as "voidReason"
-       from failures f join assets a on a.id = f.asset_id join sites s on s.id = a.site_id
-       join asset_classes c on c.id = f.class_id
-      where f.class_id = :classId and f.id = any(:ids::uuid[])
-      order by f.failed_on desc, a.tag, f.id ${lock ? 'for update of f' : ''}`,
-    { classId, ids: seen.map(({ id }) => id) },
-  );
-  const versions = new Map(seen.map(({ id, version }) => [id, version]));
-  const records: CorrectedRecord[] = [];
-  const moved: { id: string; tag: string; version: number }[] = [];
-  let unchanged = 0;
-  for (const row of rows.map((one) => rowSchema.parse(one))) {
-    const before = fieldsOf(row);
-    const after = corrected(before, correction);
-    const { id, tag, siteName, itemSingular, version } = row;
-    if (versions.get(id) !== version) moved.push({ id, tag, version });
-    else if (after === before) unchanged += 1;
-    else {
-      const failedAt = after.failedAt === null ? null : new Date(after.failedAt);
-      const refusal = after.voidReason === null ? refuseDates(row, { ...after, failedAt }, present) : null;
-      records.push({ id, tag, siteName, itemSingular, version, before, after, refusal });
-    }
-  }
-  return { records, unchanged, meanwhile: await whoMoved(db, moved) };
-}
-
-function fieldsOf(row: z.output<typeof rowSchema>): CorrectableFields {
-  const { failedOn, failedAt, modeId, effect, outsideCause, itemFittedOn, itemAge, voidReason } = row;
-  return {
-    failedOn,
-    failedAt: failedAt?.toISOString() ?? null,
-    modeId,
-    effect,
-    outsideCause,
-    itemFittedOn,
-    itemAge,
-    voidReason,
-  };
-}
-
-async function whoMoved(
-  db: Database,
-  moved: readonly { id: string; tag: string; version: number }[],
-): Promise<ChangedMeanwhile[]> {
-  if (moved.length === 0) return [];
-  const { rows } = await db.raw<{ rows: { id: string; personName: string | null; at: Date }[] }>(
-    `select distinct on (e.subject_id) e.subject_id as id, p.name as "personName", e.at
-       from audit_entries e left join people p on p.id = e.person_id
-      where e.subject = 'failure' and e.subject_id = any(:ids)
-      order by e.subject_id, e.id desc`,
-    { ids: moved.map(({ id }) => id) },
-  );
-  const last = new Map(rows.map((row) => [row.id, row]));
-  return moved.map((record) => ({
-    ...record,
-    personName: last.get(record.id)?.personName ?? null,
-    at: last.get(record.id)?.at ?? null,
-  }));
-}
-
-/** Writes the records of a plan that are not refused; call it in a transaction that holds them. */
-export async function writeCorrected(
-  trx: Database,
-  records: readonly CorrectedRecord[],
-  { personId, now }: { personId: string; now: Date },
-): Promise<void> {
-  for (const { id, version, before, after } of records) {
-    const isVoided = after.voidReason !== null && before.voidReason === null;
-    await trx('failures')
-      .where({ id, version })
-      .update({
-        failed_on: after.failedOn,
-        failed_at: after.failedAt,
-        mode_id: after.modeId,
-        effect: after.effect,
-        outside_cause: after.outsideCause,
-        item_fitted_on: after.itemFittedOn,
-        item_age: after.itemAge,
-        void_reason: after.voidReason,
-        ...(after.voidReason === null ? { voided_at: null, voided_by: null } : {}),
-        ...(isVoided ? { voided_at: now, voided_by: personId } : {}),
-        version: version + 1,
-        updated_at: now,
-      });
-  }
-}
+import { writeAudit, writeAudits } from './audit.server';
+import {
+  canBeSaved,
+  correctableColumns,
+  correctableRowSchema,
+  fieldsOf,
+  planCorrection,
+  refuseChange,
+  type CorrectedRecord,
+  type CorrectionPlan,
+  type Present,
+  type SeenRecord,
+} from './correction-plan.server';
+import { writeRecords, type RecordWrite } from './correction-write.server';
+import {
+  changedParts,
+  correctableFieldsSchema,
+  correctionSchema,
+  type CorrectableFields,
+  type Correction,
+} from './record-correction';
 
 export type CorrectResult =
   | { outcome: 'done'; corrected: number }
   /** Nothing was written: some records cannot be corrected so, or were changed by others meanwhile. */
-  | { outcome: 'not-as-seen'; plan: CorrectionPlan };
+  | { outcome: 'not-as-seen'; plan: CorrectionPlan }
+  /** It was made and taken back before; nothing was written. */
+  | { outcome: 'taken-back' };
 
 interface CorrectInput extends Present {
   /** Made by the client: the same correction sent twice is made once. */
@@ -184,46 +38,92 @@ interface CorrectInput extends Present {
   personId: string;
 }
 
+/** The records of a plan that can be corrected, as they are to be written. */
+export function writesOf(
+  records: readonly CorrectedRecord[],
+  { personId, now }: { personId: string; now: Date },
+): RecordWrite[] {
+  const voided = { at: now.toISOString(), by: personId };
+  return records
+    .filter(({ refusal }) => refusal === null)
+    .map((record) => (record.after.voidReason === null ? record : { ...record, voided }));
+}
+
 /** Corrects some failures, all or none, with before and after in the audit trail. */
 export async function correctRecords(db: Database, input: CorrectInput): Promise<CorrectResult> {
   const { correctionId, classId, seen, correction, personId, now, today } = input;
   return db.transaction(async (trx) => {
-    const done = await trx('record_correction_items')
-      .where('correction_id', correctionId)
-      .count('* as n')
-      .first();
-    if (done !== undefined && Number(done.n) > 0) return { outcome: 'done', corrected: Number(done.n) };
+    // A form sent twice at the same moment: the second waits, and finds it made.
+    await trx.raw(`select pg_advisory_xact_lock(hashtextextended(?, 0))`, [correctionId]);
+    const made = await findMade(trx, correctionId);
+    if (made !== null) return made;
+
     const plan = await planCorrection(trx, classId, { seen, correction, lock: true }, { now, today });
-    if (plan.meanwhile.length > 0 || plan.records.some(({ refusal }) => refusal !== null)) {
-      return { outcome: 'not-as-seen', plan };
-    }
+    if (!canBeSaved(plan, correction)) return { outcome: 'not-as-seen', plan };
+
+    const along = correction.kind === 'merge-mode' ? await mergeMode(trx, correction, personId) : [];
     await trx('record_corrections').insert({
       id: correctionId,
       class_id: classId,
       person_id: personId,
       at: now,
-      correction: JSON.stringify(correction),
+      correction: JSON.stringify({ ...correction, along }),
     });
-    await writeCorrected(trx, plan.records, { personId, now });
-    for (const { id, version, before, after } of plan.records) {
-      await trx('record_correction_items').insert({
-        correction_id: correctionId,
-        failure_id: id,
-        version: version + 1,
-        before: JSON.stringify(before),
-      });
-      await writeAudit(trx, {
+    await keepBefore(trx, correctionId, plan.records);
+    await writeRecords(trx, writesOf(plan.records, { personId, now }), now);
+    await writeAudits(
+      trx,
+      plan.records.map(({ id, before, after }) => ({
         personId,
         action: auditAction(correction),
         subject: 'failure',
         subjectId: id,
         ...difference(before, after),
-      });
-    }
-    if (correction.kind === 'merge-mode') await setMerged(trx, correction.from, correction.modeId, personId);
+      })),
+    );
     return { outcome: 'done', corrected: plan.records.length };
   });
 }
+
+async function findMade(trx: Database, correctionId: string): Promise<CorrectResult | null> {
+  const { rows } = await trx.raw<{ rows: { takenBackAt: Date | null; corrected: number }[] }>(
+    `select c.taken_back_at as "takenBackAt",
+            (select count(*) from record_correction_items i where i.correction_id = c.id) as corrected
+       from record_corrections c where c.id = ?`,
+    [correctionId],
+  );
+  const [made] = rows;
+  if (made === undefined) return null;
+  return made.takenBackAt === null
+    ? { outcome: 'done', corrected: made.corrected }
+    : { outcome: 'taken-back' };
+}
+
+/** Keeps what the records were, to take the correction back by; call it before they are written. */
+async function keepBefore(
+  trx: Database,
+  correctionId: string,
+  records: readonly CorrectedRecord[],
+): Promise<void> {
+  await trx.raw(
+    `insert into record_correction_items (correction_id, failure_id, version, before)
+     select :correctionId, f.id, f.version + 1, jsonb_build_object(
+              'failedOn', f.failed_on, 'failedAt', f.failed_at, 'modeId', f.mode_id, 'effect', f.effect,
+              'outsideCause', f.outside_cause, 'itemFittedOn', f.item_fitted_on, 'itemAge', f.item_age,
+              'voidReason', f.void_reason, 'voidedAt', f.voided_at, 'voidedBy', f.voided_by)
+       from failures f where f.id = any(:ids::uuid[])`,
+    { correctionId, ids: records.map(({ id }) => id) },
+  );
+}
+
+const keptSchema = correctableFieldsSchema.extend({
+  failedAt: z
+    .string()
+    .transform((at) => new Date(at).toISOString())
+    .nullable(),
+  voidedAt: z.string().nullable(),
+  voidedBy: z.string().nullable(),
+});
 
 function auditAction({ kind }: Correction): 'void' | 'restore' | 'correct' {
   return kind === 'void' || kind === 'restore' ? kind : 'correct';
@@ -231,23 +131,51 @@ function auditAction({ kind }: Correction): 'void' | 'restore' | 'correct' {
 
 /** Only what is different: the trail is read by people. */
 function difference(before: CorrectableFields, after: CorrectableFields) {
-  const names = (Object.keys(before) as (keyof CorrectableFields)[]).filter(
-    (name) => before[name] !== after[name],
-  );
-  const only = (fields: CorrectableFields) => Object.fromEntries(names.map((name) => [name, fields[name]]));
+  const parts = changedParts(before, after);
+  const only = (fields: CorrectableFields) => Object.fromEntries(parts.map((part) => [part, fields[part]]));
   return { before: only(before), after: only(after) };
 }
 
-async function setMerged(trx: Database, from: string, into: string | null, personId: string): Promise<void> {
+/** @returns the modes merged into the one that goes before: they go along. */
+async function mergeMode(
+  trx: Database,
+  { from, modeId: into }: Extract<Correction, { kind: 'merge-mode' }>,
+  personId: string,
+): Promise<string[]> {
   await trx('failure_modes').where('id', from).update({ merged_into: into });
-  // What was merged into it before goes along.
-  if (into !== null) await trx('failure_modes').where('merged_into', from).update({ merged_into: into });
+  const along = (await trx('failure_modes')
+    .where('merged_into', from)
+    .update({ merged_into: into })
+    .returning('id')) as { id: string }[];
   await writeAudit(trx, {
     personId,
-    action: into === null ? 'unmerge' : 'merge',
+    action: 'merge',
     subject: 'failure-mode',
     subjectId: from,
+    before: { mergedInto: null },
     after: { mergedInto: into },
+  });
+  return along.map(({ id }) => id);
+}
+
+const madeSchema = correctionSchema.and(z.object({ along: z.array(z.uuid()).default([]) }));
+
+async function unmergeMode(
+  trx: Database,
+  { from, into, along }: { from: string; into: string; along: readonly string[] },
+  personId: string,
+): Promise<void> {
+  await trx('failure_modes').where('id', from).update({ merged_into: null });
+  await trx('failure_modes')
+    .whereIn('id', [...along])
+    .update({ merged_into: from });
+  await writeAudit(trx, {
+    personId,
+    action: 'unmerge',
+    subject: 'failure-mode',
+    subjectId: from,
+    before: { mergedInto: into },
+    after: { mergedInto: null },
   });
 }
 
@@ -255,61 +183,111 @@ export type TakeBackResult =
   | { outcome: 'done'; records: number }
   | { outcome: 'no-such-correction' }
   /** Somebody changed so many of the records since: nothing was taken back. */
-  | { outcome: 'changed-since'; records: number };
+  | { outcome: 'changed-since'; records: number }
+  /** So many of the records do not fit their assets any more as they were before: nothing was taken back. */
+  | { outcome: 'refused'; records: number };
+
+interface TakeBackInput extends Present {
+  correctionId: string;
+  classId: string;
+  personId: string;
+}
 
 /** Takes a whole correction back, as long as nobody has changed its records since. */
-export async function takeCorrectionBack(
-  db: Database,
-  input: { correctionId: string; classId: string; personId: string; now: Date },
-): Promise<TakeBackResult> {
-  const { correctionId, classId, personId, now } = input;
+export async function takeCorrectionBack(db: Database, input: TakeBackInput): Promise<TakeBackResult> {
+  const { correctionId, classId, personId, now, today } = input;
   return db.transaction(async (trx) => {
     const held = (await trx('record_corrections')
       .where({ id: correctionId, class_id: classId })
       .forUpdate()
       .first('correction', 'taken_back_at')) as
-      { correction: Correction; taken_back_at: Date | null } | undefined;
+      { correction: unknown; taken_back_at: Date | null } | undefined;
     if (held === undefined) return { outcome: 'no-such-correction' };
-    const { rows } = await trx.raw<{
-      rows: { id: string; version: number; held: number; before: CorrectableFields }[];
-    }>(
-      `select i.failure_id as id, i.version, f.version as held, i.before
-         from record_correction_items i join failures f on f.id = i.failure_id
-        where i.correction_id = ? for update of f`,
-      [correctionId],
-    );
-    if (held.taken_back_at !== null) return { outcome: 'done', records: rows.length };
-    const changed = rows.filter(({ version, held: present }) => version !== present).length;
+
+    const items = await lockItems(trx, correctionId);
+    if (held.taken_back_at !== null) return { outcome: 'done', records: items.length };
+    const changed = items.filter(({ row, left }) => row.version !== left).length;
     if (changed > 0) return { outcome: 'changed-since', records: changed };
-    for (const { id, version, before } of rows) {
-      await takeRecordBack(trx, { id, version, before }, { personId, now });
+    const refused = items.filter(({ row, kept }) => refuseChange(row, kept, { now, today }) !== null).length;
+    if (refused > 0) return { outcome: 'refused', records: refused };
+
+    await writeRecords(trx, items.map(writeBack), now);
+    await writeAudits(
+      trx,
+      items.map(({ row, kept }) => ({
+        personId,
+        action: 'take-back',
+        subject: 'failure',
+        subjectId: row.id,
+        ...difference(fieldsOf(row), kept),
+      })),
+    );
+    const made = madeSchema.parse(held.correction);
+    if (made.kind === 'merge-mode') {
+      await unmergeMode(trx, { from: made.from, into: made.modeId, along: made.along }, personId);
     }
-    if (held.correction.kind === 'merge-mode') await setMerged(trx, held.correction.from, null, personId);
     await trx('record_corrections').where('id', correctionId).update({ taken_back_at: now });
-    return { outcome: 'done', records: rows.length };
+    return { outcome: 'done', records: items.length };
   });
 }
 
-async function takeRecordBack(
-  trx: Database,
-  { id, version, before }: { id: string; version: number; before: CorrectableFields },
-  { personId, now }: { personId: string; now: Date },
-): Promise<void> {
-  await trx('failures')
-    .where({ id, version })
-    .update({
-      failed_on: before.failedOn,
-      failed_at: before.failedAt,
-      mode_id: before.modeId,
-      effect: before.effect,
-      outside_cause: before.outsideCause,
-      item_fitted_on: before.itemFittedOn,
-      item_age: before.itemAge,
-      void_reason: before.voidReason,
-      voided_at: before.voidReason === null ? null : now,
-      voided_by: before.voidReason === null ? null : personId,
-      version: version + 1,
-      updated_at: now,
-    });
-  await writeAudit(trx, { personId, action: 'take-back', subject: 'failure', subjectId: id, after: before });
+interface KeptItem {
+  row: z.output<typeof correctableRowSchema>;
+  /** The version the correction left. */
+  left: number;
+  kept: z.output<typeof keptSchema>;
+}
+
+async function lockItems(trx: Database, correctionId: string): Promise<KeptItem[]> {
+  await trx.raw(
+    `select a.id from assets a where a.id in (
+       select f.asset_id from record_correction_items i join failures f on f.id = i.failure_id where i.correction_id = ?
+     ) order by a.id for share`,
+    [correctionId],
+  );
+  const { rows } = await trx.raw<{ rows: { left: number; kept: unknown }[] }>(
+    `select ${correctableColumns}, i.version as left, i.before as kept
+       from record_correction_items i join failures f on f.id = i.failure_id
+       join assets a on a.id = f.asset_id join sites s on s.id = a.site_id
+       join asset_classes c on c.id = f.class_id
+      where i.correction_id = ? order by f.id for update of f`,
+    [correctionId],
+  );
+  return rows.map((row) => ({
+    row: correctableRowSchema.parse(row),
+    left: row.left,
+    kept: keptSchema.parse(row.kept),
+  }));
+}
+
+function writeBack({ row, kept }: KeptItem): RecordWrite {
+  const { voidedAt, voidedBy, ...after } = kept;
+  const write = { id: row.id, version: row.version, before: fieldsOf(row), after };
+  return voidedAt === null ? write : { ...write, voided: { at: voidedAt, by: voidedBy } };
+}
+
+/** A correction that was made in a class. */
+export interface MadeCorrection {
+  readonly id: string;
+  readonly correction: Correction;
+  readonly personName: string;
+  readonly at: Date;
+  readonly records: number;
+  readonly takenBackAt: Date | null;
+}
+
+/** The last corrections made in a class, the latest first. */
+export async function listCorrections(
+  db: Database,
+  classId: string,
+  most: number,
+): Promise<MadeCorrection[]> {
+  const { rows } = await db.raw<{ rows: (Omit<MadeCorrection, 'correction'> & { correction: unknown })[] }>(
+    `select c.id, c.correction, p.name as "personName", c.at, c.taken_back_at as "takenBackAt",
+            (select count(*) from record_correction_items i where i.correction_id = c.id) as records
+       from record_corrections c join people p on p.id = c.person_id
+      where c.class_id = ? order by c.at desc limit ?`,
+    [classId, most],
+  );
+  return rows.map((row) => ({ ...row, correction: correctionSchema.parse(row.correction) }));
 }

@@ -146,6 +146,7 @@ export default function FailurePage({ loaderData, actionData }: Route.ComponentP
               from: failure.failedOn,
               to: failure.failedOn,
               voided: 'all',
+              record: failure.id,
             })}`}
             className="inline-flex min-h-11 items-center"
           >

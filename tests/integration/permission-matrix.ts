@@ -46,6 +46,8 @@ export const permissions: Readonly<Record<string, Permission>> = {
       'preview-merge': ['lead'],
       save: ['lead'],
       'preview-again': ['lead'],
+      'leave-out': ['lead'],
+      'choose-again': ['lead'],
       'take-back': ['lead'],
     },
   },

@@ -1,7 +1,8 @@
 import { randomUUID } from 'node:crypto';
 import { afterAll, beforeAll, beforeEach, describe, expect, it, vi } from 'vitest';
-import type { CorrectionPreview } from '~/components/clean/preview';
+import type { CorrectionPreview } from '~/models/correction-preview.server';
 import { listFailureModes } from '~/models/failure-modes.server';
+import { findFailure, logFailure } from '~/models/failures.server';
 import * as cleanRoute from '~/routes/class-clean';
 import * as failureRoute from '~/routes/failure';
 import { startSession } from '~/services/session.server';
@@ -21,6 +22,14 @@ let test: TestDatabase;
 let db: Database;
 let siteId: string;
 const cookies = new Map<string, string>();
+const personIds = new Map<string, string>();
+const roles = {
+  lead: 'lead',
+  colleague: 'lead',
+  technician: 'technician',
+  manager: 'manager',
+  admin: 'admin',
+} as const;
 
 beforeAll(async () => {
   test = await createTestDatabase();
@@ -31,8 +40,9 @@ beforeAll(async () => {
   vi.stubEnv('INTERVALE_NOW', '2026-05-20T09:00:00Z');
   await db('organisations').insert({ name: 'Larkmoor', time_zone: 'Europe/London', currency: 'GBP' });
   siteId = await addSite(db, 'Fenwick Baths');
-  for (const name of ['lead', 'colleague']) {
-    const id = await addPerson(db, { email: `${name}@larkmoor.example`, roles: ['lead'] });
+  for (const [name, role] of Object.entries(roles)) {
+    const id = await addPerson(db, { email: `${name}@larkmoor.example`, roles: [role] });
+    personIds.set(name, id);
     cookies.set(name, (await startSession(db, new Request(host), id)).split(';')[0]!);
   }
 });
@@ -74,6 +84,7 @@ beforeEach(async () => {
 
 interface Row {
   id: string;
+  asset_id: string;
   version: number;
   failed_on: string;
   mode_id: string | null;
@@ -103,16 +114,24 @@ async function preview(fields: Record<string, string | string[]>, query = ''): P
   expect(response.status).toBe(200);
   return ((await response.json()) as { preview: CorrectionPreview }).preview;
 }
-const save = (plan: CorrectionPreview, who = 'lead') =>
+/** The form of a preview, sent by one of its buttons. */
+const decide = (intent: string, plan: CorrectionPreview, who = 'lead') =>
   send(
     {
-      intent: 'save',
+      intent,
       correctionId: plan.correctionId,
       correction: JSON.stringify(plan.correction),
       chosen: plan.chosen,
+      ...(plan.all ? { all: 'on' } : {}),
     },
     { who },
   );
+const save = (plan: CorrectionPreview, who = 'lead') => decide('save', plan, who);
+const takeBack = (correctionId: string) => send({ intent: 'take-back', correctionId });
+async function previewIn(response: Response, status = 200): Promise<CorrectionPreview> {
+  expect(response.status).toBe(status);
+  return ((await response.json()) as { preview: CorrectionPreview }).preview;
+}
 async function errorsOf(response: Response): Promise<Record<string, string[]>> {
   expect(response.status).toBe(400);
   return ((await response.json()) as { form: { error: Record<string, string[]> } }).form.error;
@@ -180,6 +199,116 @@ describe('the preview', () => {
     expect((await rowOf(first!.id)).failed_on).toBe(first!.failed_on);
   });
 
+  const impossible: [string, Record<string, string>, object][] = [
+    ['before service', { what: 'date', failedOn: '1999-12-31' }, { code: 'before-service' }],
+    ['in the future', { what: 'date', failedOn: '2026-05-21' }, { code: 'in-future' }],
+    [
+      'after retirement',
+      { what: 'date', failedOn: '2026-05-20' },
+      { code: 'after-retirement', day: '2026-05-19' },
+    ],
+    [
+      'fitted after it failed',
+      { what: 'fitted', fittedOn: '2026-05-19' },
+      { code: 'fitted-after-failed', day: '2026-05-19' },
+    ],
+    ['fitted before service', { what: 'fitted', fittedOn: '1999-06-01' }, { code: 'fitted-before-service' }],
+  ];
+  it.each(impossible)('refuses what cannot be: %s', async (_, fields, refusal) => {
+    const [first] = await failures();
+    await db('assets')
+      .whereIn('id', db('failures').where('id', first!.id).select('asset_id'))
+      .update({ retired_on: '2026-05-19' });
+    const plan = await preview({ ...fields, record: tickOf(first!) });
+    expect(plan).toMatchObject({ total: 1, refused: 1, maySave: false, effect: null });
+    expect(plan.records[0]?.refusal).toMatchObject(refusal);
+  });
+
+  it('refuses to put back what its asset was retired before', async () => {
+    const last = (await failures()).at(-1)!;
+    await db('failures').where('id', last.id).update({ voided_at: new Date(), void_reason: 'wrong' });
+    await db('assets').where('id', last.asset_id).update({ watched_until: '2023-06-01' });
+    const plan = await preview({ what: 'restore', record: tickOf(last) });
+    expect(plan.records[0]?.refusal).toEqual({ code: 'after-watch', day: '2023-06-01' });
+  });
+
+  it('lets a record that would be refused today be given a mode all the same', async () => {
+    const last = (await failures()).at(-1)!;
+    await db('assets').where('id', last.asset_id).update({ watched_until: '2023-06-01' });
+    const plan = await preview({ what: 'mode', modeId: modes.leak, record: tickOf(last) });
+    expect(plan).toMatchObject({ refused: 0, maySave: true });
+    expect((await save(plan)).status).toBe(302);
+    expect((await rowOf(last.id)).mode_id).toBe(modes.leak);
+  });
+
+  it('leaves out what cannot be corrected, and keeps the rest of the choice', async () => {
+    const all = await failures();
+    const [early, late] = [all[0]!, all.at(-1)!];
+    const plan = await preview({
+      what: 'fitted',
+      fittedOn: late.failed_on,
+      record: [tickOf(early), tickOf(late)],
+    });
+    expect(plan).toMatchObject({ total: 2, refused: 1, maySave: false });
+    const rest = await previewIn(await decide('leave-out', plan));
+    expect(rest).toMatchObject({ total: 1, refused: 0, maySave: true, chosen: tickOf(late) });
+  });
+
+  it('goes back to the choice with all that was ticked and typed', async () => {
+    const [first, second] = await failures();
+    const record = [tickOf(first!), tickOf(second!)];
+    const plan = await preview({ what: 'void', reason: 'logged twice', record });
+    const back = await decide('choose-again', plan);
+    expect(await back.json()).toMatchObject({
+      preview: null,
+      form: { initialValue: { what: 'void', reason: 'logged twice', record } },
+    });
+    const whole = await preview({ what: 'effect', effect: 'patched', all: 'on' });
+    expect(await (await decide('choose-again', whole)).json()).toMatchObject({
+      form: { initialValue: { what: 'effect', effect: 'patched', all: 'on' } },
+    });
+  });
+
+  it('takes what was chosen on another page of the list along', async () => {
+    const [first, second] = await failures();
+    const plan = await preview({
+      what: 'effect',
+      effect: 'patched',
+      record: tickOf(first!),
+      also: tickOf(second!),
+    });
+    expect(plan.total).toBe(2);
+  });
+
+  it('takes 5,000 in one go and no more', async () => {
+    await db.raw(
+      `insert into failures (id, asset_id, class_id, failed_on, effect)
+       select gen_random_uuid(), ?, ?, '2024-01-01', 'patched' from generate_series(1, 5001)`,
+      [assetIds[0]!, classId],
+    );
+    const every = await send({ intent: 'preview', what: 'effect', effect: 'renewed', all: 'on' });
+    expect((await errorsOf(every)).record?.[0]).toMatch(/^More than 5.000 failures match/);
+    const ids = (await failures()).slice(0, 5001);
+    const forged = await preview({ what: 'effect', effect: 'renewed', record: tickOf(ids[0]!) });
+    const response = await save({ ...forged, chosen: ids.map(tickOf).join(',') });
+    expect(response.status).toBe(400);
+    const most = await preview({ what: 'void', reason: 'twice', record: ids.slice(0, 5000).map(tickOf) });
+    expect(most).toMatchObject({ total: 5000, maySave: true });
+    expect(most.records).toHaveLength(50);
+    expect((await save(most)).status).toBe(302);
+    expect((await failures()).filter((row) => row.void_reason === 'twice')).toHaveLength(5000);
+    await takeBack(most.correctionId);
+    expect((await failures()).filter((row) => row.void_reason === 'twice')).toHaveLength(0);
+  });
+
+  it('says when a mode is not on the list of the class', async () => {
+    const [first] = await failures();
+    const plan = await preview({ what: 'mode', modeId: randomUUID(), record: tickOf(first!) });
+    expect(plan).toMatchObject({ modeGone: true, maySave: false });
+    expect((await previewIn(await save(plan), 409)).modeGone).toBe(true);
+    expect((await rowOf(first!.id)).version).toBe(first!.version);
+  });
+
   it.each([
     [{ what: 'void', reason: 'x' }, 'record', /Tick the failures/],
     [{ all: 'on' }, 'what', /Say what to correct/],
@@ -216,6 +345,24 @@ describe('the preview', () => {
 });
 
 describe('a correction', () => {
+  it.each(['technician', 'manager', 'admin'])('is not for a %s', async (who) => {
+    const [first] = await failures();
+    const plan = await preview({ what: 'void', reason: 'x', record: tickOf(first!) });
+    expect((await save(plan, who)).status).toBe(403);
+    expect((await rowOf(first!.id)).void_reason).toBeNull();
+    await save(plan);
+    expect((await send({ intent: 'take-back', correctionId: plan.correctionId }, { who })).status).toBe(403);
+    expect((await rowOf(first!.id)).void_reason).toBe('x');
+  });
+
+  it('is not for anybody who is not signed in', async () => {
+    const [first] = await failures();
+    const plan = await preview({ what: 'void', reason: 'x', record: tickOf(first!) });
+    const response = await save(plan, 'nobody');
+    expect(response.headers.get('Location')).toMatch(/^\/sign-in/);
+    expect((await rowOf(first!.id)).void_reason).toBeNull();
+  });
+
   const cases: [string, Record<string, string>, Partial<Row>][] = [
     ['voids', { what: 'void', reason: 'logged twice' }, { void_reason: 'logged twice' }],
     ['marks an outside cause', { what: 'outside-cause', cause: 'flooded' }, { outside_cause: 'flooded' }],
@@ -275,21 +422,104 @@ describe('a correction', () => {
     await save(theirs, 'colleague');
 
     const response = await save(mine);
-    expect(response.status).toBe(409);
-    const told = ((await response.json()) as { preview: CorrectionPreview }).preview;
-    expect(told.meanwhile).toMatchObject([{ id: first!.id, personName: 'colleague' }]);
+    const told = await previewIn(response, 409);
+    expect(told.meanwhile).toMatchObject([
+      {
+        id: first!.id,
+        change: { personName: 'colleague', action: 'void', after: { voidReason: 'logged twice' } },
+      },
+    ]);
     expect((await rowOf(second!.id)).mode_id).toBeNull();
 
-    const again = await send({
-      intent: 'preview-again',
-      correctionId: told.correctionId,
-      correction: JSON.stringify(told.correction),
-      chosen: told.chosen,
-    });
-    const fresh = ((await again.json()) as { preview: CorrectionPreview }).preview;
+    const fresh = await previewIn(await decide('preview-again', told));
     expect(fresh).toMatchObject({ total: 2, meanwhile: [] });
     expect((await save(fresh)).status).toBe(302);
     expect((await rowOf(first!.id)).mode_id).toBe(modes.leak);
+  });
+
+  it('is made once when it is sent twice at the same moment', async () => {
+    const [first] = await failures();
+    const plan = await preview({ what: 'mode', modeId: modes.crack, record: tickOf(first!) });
+    const answers = await Promise.all([save(plan), save(plan)]);
+    expect(answers.map(({ status }) => status)).toEqual([302, 302]);
+    expect((await rowOf(first!.id)).version).toBe(first!.version + 1);
+  });
+
+  it('of the same record by two at once is made by one, and the other is told', async () => {
+    const [first] = await failures();
+    const mine = await preview({ what: 'mode', modeId: modes.crack, record: tickOf(first!) });
+    const theirs = await preview({ what: 'effect', effect: 'patched', record: tickOf(first!) });
+    const answers = await Promise.all([save(mine), save(theirs, 'colleague')]);
+    expect(answers.map(({ status }) => status).sort()).toEqual([302, 409]);
+    expect((await rowOf(first!.id)).version).toBe(first!.version + 1);
+  });
+
+  it('is not made again by its old form once it was taken back', async () => {
+    const [first] = await failures();
+    const plan = await preview({ what: 'effect', effect: 'patched', record: tickOf(first!) });
+    await save(plan);
+    await takeBack(plan.correctionId);
+    expect((await save(plan)).status).toBe(302);
+    expect((await rowOf(first!.id)).effect).toBe('renewed');
+  });
+
+  it('that puts back is taken back to the void as it was, by whom and when', async () => {
+    const [first] = await failures();
+    const void_ = {
+      voided_at: new Date('2026-02-03T04:05:06Z'),
+      voided_by: personIds.get('colleague'),
+      void_reason: 'wrong',
+    };
+    await db('failures').where('id', first!.id).update(void_);
+    const plan = await preview({ what: 'restore', record: tickOf(first!) });
+    await save(plan);
+    await takeBack(plan.correctionId);
+    expect(await rowOf(first!.id)).toMatchObject(void_);
+  });
+
+  it('is not taken back where the record would not fit its asset any more', async () => {
+    const last = (await failures()).at(-1)!;
+    const plan = await preview({ what: 'void', reason: 'wrong', record: tickOf(last) });
+    await save(plan);
+    await db('assets').where('id', last.asset_id).update({ watched_until: '2023-06-01' });
+    await takeBack(plan.correctionId);
+    expect((await rowOf(last.id)).void_reason).toBe('wrong');
+  });
+
+  it('leaves a time of day alone unless the day was wrong', async () => {
+    const [first, second] = await failures();
+    const failed_at = new Date(`${first!.failed_on}T11:30:00Z`);
+    await db('failures').whereIn('id', [first!.id, second!.id]).update({ failed_at });
+    await save(await preview({ what: 'effect', effect: 'patched', record: tickOf(first!) }));
+    expect((await db('failures').where('id', first!.id).first('failed_at')) as object).toEqual({ failed_at });
+    const plan = await preview({ what: 'date', failedOn: '2026-02-03', record: tickOf(second!) });
+    await save(plan);
+    expect((await db('failures').where('id', second!.id).first('failed_at')) as object).toEqual({
+      failed_at: null,
+    });
+    await takeBack(plan.correctionId);
+    expect((await db('failures').where('id', second!.id).first('failed_at')) as object).toEqual({
+      failed_at,
+    });
+  });
+
+  it('stands in the list of those made, with its way back', async () => {
+    const [first] = await failures();
+    const plan = await preview({ what: 'effect', effect: 'patched', record: tickOf(first!) });
+    await save(plan);
+    const page = await visit(
+      clean,
+      new Request(`${host}/classes/${classId}/clean`, { headers: { Cookie: cookies.get('lead')! } }),
+    );
+    expect(((await page.json()) as { corrections: object[] }).corrections).toMatchObject([
+      {
+        id: plan.correctionId,
+        correction: { kind: 'effect', effect: 'patched' },
+        personName: 'lead',
+        records: 1,
+        takenBackAt: null,
+      },
+    ]);
   });
 
   it('is not taken back once somebody has changed a record since', async () => {
@@ -343,6 +573,83 @@ describe('merging two modes', () => {
     expect((await failures()).filter(({ mode_id: mode }) => mode === modes.crack)).toHaveLength(plan.total);
   });
 
+  const merge = async (from: string, into: string) =>
+    previewIn(await send({ intent: 'preview-merge', from, into }));
+
+  it('does so for a mode that nothing was logged with', async () => {
+    await db('failures').where('class_id', classId).update({ mode_id: modes.leak });
+    const plan = await merge(modes.crack, modes.leak);
+    expect(plan).toMatchObject({ total: 0, maySave: true });
+    await save(plan);
+    expect((await listFailureModes(db, classId)).map(({ name }) => name)).toEqual(['Leak']);
+  });
+
+  const log = (modeId: string, id = randomUUID()) =>
+    logFailure(db, {
+      entry: {
+        id,
+        assetId: assetIds[0]!,
+        modeId,
+        failedOn: '2026-05-20',
+        failedAt: null,
+        effect: 'renewed',
+        outsideCause: null,
+        itemFittedOn: null,
+        note: null,
+      },
+      personId: personIds.get('technician')!,
+      now: new Date('2026-05-20T09:00:00Z'),
+      today: '2026-05-20',
+    });
+
+  it('waits for what was logged with the mode that goes after the preview', async () => {
+    const plan = await merge(modes.crack, modes.leak);
+    const id = randomUUID();
+    expect(await log(modes.crack, id)).toEqual({ outcome: 'stored' });
+    const told = await previewIn(await save(plan), 409);
+    expect(told.meanwhile).toMatchObject([{ id, change: { action: 'log', personName: 'technician' } }]);
+    const fresh = await previewIn(await decide('preview-again', told));
+    expect(fresh).toMatchObject({ total: plan.total + 1, meanwhile: [], maySave: true });
+    await save(fresh);
+    expect((await rowOf(id)).mode_id).toBe(modes.leak);
+  });
+
+  it('takes a form that was opened before as the mode that stayed, sent once or twice', async () => {
+    await save(await merge(modes.crack, modes.leak));
+    const id = randomUUID();
+    expect(await log(modes.crack, id)).toEqual({ outcome: 'stored' });
+    expect(await log(modes.crack, id)).toEqual({ outcome: 'already-stored', same: true });
+    expect((await findFailure(db, id))?.modeName).toBe('Leak');
+  });
+
+  it('merges no mode that was merged meanwhile, and sets none', async () => {
+    const [first] = await failures();
+    const setting = await preview({
+      what: 'mode',
+      modeId: modes.crack,
+      record: `${first!.id}:${first!.version}`,
+    });
+    const back = await merge(modes.leak, modes.crack);
+    await save(await merge(modes.crack, modes.leak));
+    expect((await previewIn(await save(back), 409)).modeGone).toBe(true);
+    expect((await previewIn(await save(setting), 409)).modeGone).toBe(true);
+  });
+
+  it('takes along what was merged before, and leaves it there when taken back', async () => {
+    const [tear] = (await db('failure_modes')
+      .insert({ class_id: classId, name: 'Tear' })
+      .returning('id')) as { id: string }[];
+    await save(await merge(tear!.id, modes.crack));
+    const plan = await merge(modes.crack, modes.leak);
+    await save(plan);
+    const mergedInto = async () =>
+      ((await db('failure_modes').where('id', tear!.id).first('merged_into')) as { merged_into: string })
+        .merged_into;
+    expect(await mergedInto()).toBe(modes.leak);
+    await takeBack(plan.correctionId);
+    expect(await mergedInto()).toBe(modes.crack);
+  });
+
   it('refuses to merge a mode into itself', async () => {
     const response = await send({ intent: 'preview-merge', from: modes.leak, into: modes.leak });
     expect((await errorsOf(response)).into?.[0]).toContain('itself');
@@ -350,6 +657,19 @@ describe('merging two modes', () => {
 });
 
 describe('the page of a failure', () => {
+  it('tells what taking back changed, too', async () => {
+    const [first] = await failures();
+    const plan = await preview({ what: 'effect', effect: 'patched', record: tickOf(first!) });
+    await save(plan);
+    await takeBack(plan.correctionId);
+    expect(
+      await db('audit_entries')
+        .where('subject_id', first!.id)
+        .orderBy('id', 'desc')
+        .first('action', 'before', 'after'),
+    ).toEqual({ action: 'take-back', before: { effect: 'patched' }, after: { effect: 'renewed' } });
+  });
+
   it('tells who changed what, from what to what', async () => {
     const [first] = await failures();
     await save(await preview({ what: 'effect', effect: 'patched', record: tickOf(first!) }));

@@ -5,19 +5,22 @@ import { outsideCauseWords } from '~/components/log/words';
 import { RadioRows } from '~/components/radio-rows';
 import { SelectField } from '~/components/select-field';
 import { TextField } from '~/components/text-field';
-import { formatNoun } from '~/format/number';
+import { formatCount, formatNoun } from '~/format/number';
 import { outsideCauses } from '~/models/failure';
+import { mostCorrected } from '~/models/record-correction';
 
 interface CorrectionFieldsProps {
   modes: readonly { id: string; name: string }[];
   /** How many failures match the filter. */
   total: number;
+  /** What was chosen before, as "id:version", and is not among the rows shown. */
+  elsewhere: readonly string[];
   itemPlural: string;
   refused: SubmissionResult<string[]> | null;
 }
 
 /** What to correct on the failures ticked above, and the button that shows what it would do. */
-export function CorrectionFields({ modes, total, itemPlural, refused }: CorrectionFieldsProps) {
+export function CorrectionFields({ modes, total, elsewhere, itemPlural, refused }: CorrectionFieldsProps) {
   const typed = (name: string) => {
     const value = refused?.initialValue?.[name];
     return typeof value === 'string' ? value : undefined;
@@ -25,13 +28,24 @@ export function CorrectionFields({ modes, total, itemPlural, refused }: Correcti
   const errorsOf = (name: string) => refused?.error?.[name] ?? undefined;
   return (
     <section aria-labelledby="correct" className="mt-6 max-w-[46rem]">
-      <h2 id="correct">Correct them</h2>
+      <h2 id="correct" className="scroll-mt-20">
+        Correct them
+      </h2>
       <Checkbox
         name="all"
         label={`All ${formatNoun(total, 'failure')} that match, not only the ticked ones`}
+        hint={`At most ${formatCount(mostCorrected)} in one go.`}
         defaultChecked={typed('all') === 'on'}
         errors={errorsOf('record')}
       />
+      {elsewhere.length > 0 && (
+        <Checkbox
+          name="also"
+          value={elsewhere.join(',')}
+          label={`And ${formatNoun(elsewhere.length, 'failure')} chosen before, not on this page of the list`}
+          defaultChecked
+        />
+      )}
       <RadioRows
         name="what"
         label="What is to be put right"

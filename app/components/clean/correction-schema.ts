@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { effects, outsideCauses } from '~/models/failure';
-import { correctionSchema, type Correction } from '~/models/record-correction';
+import { correctionSchema, mostCorrected, type Correction } from '~/models/record-correction';
 
 export const correctionChoices = [
   'void',
@@ -26,10 +26,12 @@ const seenRecord = z
 const seenList = z
   .string()
   .transform((text) => text.split(',').filter(Boolean))
-  .pipe(z.array(seenRecord));
+  .pipe(z.array(seenRecord).max(mostCorrected));
 
 const chosen = {
   record: z.array(seenRecord).default([]),
+  /** What was chosen before and is not on the page of the list that is shown. */
+  also: seenList.default([]),
   /** Everything that matches the filter in the address. */
   all: z.literal('on').optional(),
 };
@@ -58,7 +60,14 @@ const correctionText = z
   })
   .pipe(correctionSchema);
 
-const planForm = { correctionId: z.uuid(), chosen: seenList, correction: correctionText };
+const planForm = {
+  correctionId: z.uuid(),
+  // Empty where two modes without failures are merged.
+  chosen: seenList.default([]),
+  /** Whether all that match the filter were chosen, so that going back leads to the same choice. */
+  all: z.literal('on').optional(),
+  correction: correctionText,
+};
 
 /** The forms of the page where records are put right. */
 export const cleanFormSchema = z.discriminatedUnion('intent', [
@@ -73,13 +82,15 @@ export const cleanFormSchema = z.discriminatedUnion('intent', [
   }),
   z.object({ intent: z.literal('save'), ...planForm }),
   z.object({ intent: z.literal('preview-again'), ...planForm }),
+  z.object({ intent: z.literal('leave-out'), ...planForm }),
+  z.object({ intent: z.literal('choose-again'), ...planForm }),
   z.object({ intent: z.literal('take-back'), correctionId: z.uuid() }),
 ]);
 export type CleanForm = z.output<typeof cleanFormSchema>;
 type PreviewForm = z.output<typeof previewForm>;
 
 function missingField(form: PreviewForm): { field: string; message: string } | null {
-  if (form.all === undefined && form.record.length === 0) {
+  if (form.all === undefined && form.record.length === 0 && form.also.length === 0) {
     return { field: 'record', message: 'Tick the failures to correct, or all that match.' };
   }
   if (form.what === 'void' && form.reason === '')
@@ -113,5 +124,45 @@ export function correctionOf(form: PreviewForm): Correction {
       return { kind: 'date', failedOn: form.failedOn ?? '' };
     case 'fitted':
       return { kind: 'fitted', fittedOn: form.fittedOn };
+  }
+}
+
+/** What the form would hold for a correction: what was typed and ticked, to go back to. */
+export function formOf({
+  chosen,
+  all,
+  correction,
+}: Pick<Extract<CleanForm, { intent: 'save' }>, 'chosen' | 'all' | 'correction'>): Record<
+  string,
+  string | string[]
+> {
+  if (correction.kind === 'merge-mode') {
+    return { intent: 'preview-merge', from: correction.from, into: correction.modeId };
+  }
+  const record = chosen.map(({ id, version }) => `${id}:${version}`);
+  return {
+    intent: 'preview',
+    what: correction.kind,
+    ...(all === undefined ? { record } : { all }),
+    ...typedOf(correction),
+  };
+}
+
+function typedOf(correction: Exclude<Correction, { kind: 'merge-mode' }>): Record<string, string> {
+  switch (correction.kind) {
+    case 'void':
+      return { reason: correction.reason };
+    case 'restore':
+      return {};
+    case 'mode':
+      return { modeId: correction.modeId ?? '' };
+    case 'outside-cause':
+      return { cause: correction.cause ?? '' };
+    case 'effect':
+      return { effect: correction.effect };
+    case 'date':
+      return { failedOn: correction.failedOn };
+    case 'fitted':
+      return { fittedOn: correction.fittedOn ?? '' };
   }
 }

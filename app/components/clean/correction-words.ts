@@ -1,7 +1,8 @@
 import { formatCalendarDate } from '~/format/date';
 import { formatClock } from '~/format/number';
 import { outsideCauseWords } from '~/components/log/words';
-import type { CorrectableFields, Correction } from '~/models/record-correction';
+import type { RecordChange } from '~/models/last-change.server';
+import { correctableFieldsSchema, type CorrectableFields, type Correction } from '~/models/record-correction';
 
 /** Names of a class's modes by id. */
 export type ModeNames = Readonly<Record<string, string>>;
@@ -59,14 +60,16 @@ export function fieldChanges(
   ) => {
     const [from, to] = [before[key], after[key]];
     if (from === undefined || to === undefined || from === to) return;
-    changes.push({
+    const change = {
       name,
       from: words(from as CorrectableFields[Key]),
       to: words(to as CorrectableFields[Key]),
-    });
+    };
+    if (change.from !== change.to) changes.push(change);
   };
   add('voidReason', 'Counts', (reason) => (reason === null ? 'yes' : `no, voided: ${reason}`));
   add('failedOn', 'Day', (day) => formatCalendarDate(day, 'short'));
+  add('failedAt', 'Time of day', (at) => (at === null ? 'not known' : 'known'));
   add('modeId', 'Mode', (mode) => modeName(mode, modes));
   add('effect', 'What was done', (effect) => effectNames[effect]);
   add('outsideCause', 'Outside cause', (cause) =>
@@ -79,4 +82,52 @@ export function fieldChanges(
     age === null ? 'none' : formatClock(age, clock === 'operating-hours' ? 'hours' : 'days'),
   );
   return changes;
+}
+
+const deeds: Record<string, string> = {
+  log: 'logged it',
+  void: 'voided it',
+  restore: 'put it back',
+  correct: 'corrected it',
+  import: 'changed it by an import',
+  'take-back': 'took a correction back',
+};
+
+/** What somebody did to a failure, as a verb with its object. */
+export const deedWords = (action: string): string => deeds[action] ?? 'changed it';
+
+const columnOf: Record<keyof CorrectableFields, string> = {
+  failedOn: 'failed_on',
+  failedAt: 'failed_at',
+  modeId: 'mode_id',
+  effect: 'effect',
+  outsideCause: 'outside_cause',
+  itemFittedOn: 'item_fitted_on',
+  itemAge: 'item_age',
+  voidReason: 'void_reason',
+};
+
+/**
+ * The parts of a failure in one side of an entry of the audit trail. A correction keeps them by name, the undoing of a single
+ * entry keeps whether it counts, and an import keeps the whole row.
+ */
+export function heldParts(held: RecordChange['before']): Partial<CorrectableFields> {
+  if (held === null) return {};
+  if ('voided' in held) {
+    return { voidReason: held.voided === true ? String(held.reason ?? 'no reason given') : null };
+  }
+  const byName = Object.entries(columnOf).map(([name, column]) => [
+    name,
+    name in held ? held[name] : held[column],
+  ]);
+  const read = correctableFieldsSchema.partial().safeParse(Object.fromEntries(byName));
+  return read.data ?? {};
+}
+
+/** What an entry of the audit trail changed about a failure, part by part. */
+export function auditedChanges(
+  { action, before, after }: RecordChange,
+  names: { modes: ModeNames; clock: 'calendar-days' | 'operating-hours' },
+): FieldChange[] {
+  return action === 'log' ? [] : fieldChanges(heldParts(before), heldParts(after), names);
 }

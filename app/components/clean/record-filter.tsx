@@ -3,34 +3,25 @@ import { Button } from '~/components/button';
 import { Disclosure } from '~/components/disclosure';
 import { SelectField } from '~/components/select-field';
 import { TextField } from '~/components/text-field';
+import { filterOf, type CleanState } from './list-state';
 
 interface RecordFilterProps {
   /** What the address says. */
-  state: {
-    site?: string;
-    mode?: string;
-    effect?: string;
-    outside?: string;
-    voided?: string;
-    from?: string;
-    to?: string;
-    tag?: string;
-  };
+  state: CleanState;
   sites: readonly { id: string; name: string }[];
   modes: readonly { id: string; name: string }[];
 }
 
-/** Narrows the table of failures; the address holds what was chosen. */
+/** Narrows the table of failures; the address holds what was chosen. Other forms of the page have fields of the same names. */
 export function RecordFilter({ state, sites, modes }: RecordFilterProps) {
-  const isFiltered = Object.entries(state).some(
-    ([name, value]) => value !== undefined && !['sort', 'direction', 'page'].includes(name),
-  );
+  const isFiltered = Object.values(filterOf(state)).some((value) => value !== undefined);
   return (
     <Disclosure summary={isFiltered ? 'Filter (on)' : 'Filter'} open={isFiltered}>
       <Form className="grid gap-x-5 sm:grid-cols-2 lg:grid-cols-4" key={JSON.stringify(state)}>
-        <TextField name="tag" label="Tag holds" defaultValue={state.tag} maxLength={60} />
+        <TextField name="tag" id="only-tag" label="Tag holds" defaultValue={state.tag} maxLength={60} />
         <SelectField
           name="site"
+          id="only-site"
           label="Site"
           defaultValue={state.site ?? ''}
           emptyLabel="All"
@@ -38,6 +29,7 @@ export function RecordFilter({ state, sites, modes }: RecordFilterProps) {
         />
         <SelectField
           name="mode"
+          id="only-mode"
           label="Mode"
           defaultValue={state.mode ?? ''}
           emptyLabel="Any"
@@ -48,6 +40,7 @@ export function RecordFilter({ state, sites, modes }: RecordFilterProps) {
         />
         <SelectField
           name="effect"
+          id="only-effect"
           label="What was done"
           defaultValue={state.effect ?? ''}
           emptyLabel="Either"
@@ -58,6 +51,7 @@ export function RecordFilter({ state, sites, modes }: RecordFilterProps) {
         />
         <SelectField
           name="outside"
+          id="only-outside"
           label="Outside cause"
           defaultValue={state.outside ?? ''}
           emptyLabel="Either"
@@ -68,6 +62,7 @@ export function RecordFilter({ state, sites, modes }: RecordFilterProps) {
         />
         <SelectField
           name="voided"
+          id="only-voided"
           label="Voided"
           defaultValue={state.voided ?? ''}
           emptyLabel="Those that count"
@@ -76,8 +71,8 @@ export function RecordFilter({ state, sites, modes }: RecordFilterProps) {
             { value: 'all', label: 'All' },
           ]}
         />
-        <TextField type="date" name="from" label="From" defaultValue={state.from} />
-        <TextField type="date" name="to" label="Up to" defaultValue={state.to} />
+        <TextField type="date" name="from" id="only-from" label="From" defaultValue={state.from} />
+        <TextField type="date" name="to" id="only-to" label="Up to" defaultValue={state.to} />
         <div>
           <Button tone="quiet">Show</Button>
         </div>

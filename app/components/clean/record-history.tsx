@@ -1,7 +1,7 @@
 import { formatDateTime } from '~/format/date';
-import { correctableFieldsSchema } from '~/models/record-correction';
 import type { RecordChange } from '~/models/last-change.server';
-import { fieldChanges, type ModeNames } from './correction-words';
+import { auditedChanges, deedWords, type ModeNames } from './correction-words';
+import { FieldChanges } from './field-changes';
 
 interface RecordHistoryProps {
   history: readonly RecordChange[];
@@ -10,16 +10,6 @@ interface RecordHistoryProps {
   timeZone: string;
 }
 
-const deeds: Record<string, string> = {
-  void: 'voided it',
-  restore: 'put it back',
-  correct: 'corrected it',
-  'take-back': 'took a correction back',
-};
-
-/** What the audit trail holds of a failure's parts; older entries may hold other things. */
-const partsOf = (held: unknown) => correctableFieldsSchema.partial().safeParse(held).data ?? {};
-
 /** Who changed a failure, when, and from what to what; nothing where nobody did. */
 export function RecordHistory({ history, modes, clock, timeZone }: RecordHistoryProps) {
   if (history.length === 0) return null;
@@ -27,15 +17,13 @@ export function RecordHistory({ history, modes, clock, timeZone }: RecordHistory
     <section aria-labelledby="history" className="mt-6">
       <h2 id="history">What was changed</h2>
       <ol className="mt-1">
-        {history.map(({ action, personName, at, before, after }, index) => (
+        {history.map((change, index) => (
           <li key={index} className="border-hair border-b py-2">
-            {personName ?? 'An import'} {deeds[action] ?? 'changed it'}, {formatDateTime(at, timeZone)}
-            {action === 'correct' &&
-              fieldChanges(partsOf(before), partsOf(after), { modes, clock }).map(({ name, from, to }) => (
-                <span key={name} className="text-grey block text-[0.92rem]">
-                  {name}: from {from} to {to}
-                </span>
-              ))}
+            {change.personName ?? 'Intervale'} {deedWords(change.action)},{' '}
+            {formatDateTime(change.at, timeZone)}
+            <span className="text-grey text-[0.92rem]">
+              <FieldChanges changes={auditedChanges(change, { modes, clock })} />
+            </span>
           </li>
         ))}
       </ol>

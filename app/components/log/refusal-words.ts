@@ -1,8 +1,11 @@
 import type { FailureRefusal } from '~/models/failure-refusals';
+import { withArticle } from '~/format/article';
 import { formatCalendarDate } from '~/format/date';
 
 /** Field of the log form that a refusal belongs to; null for the whole form. */
 export type RefusedField = 'mode' | 'when' | 'failedOn' | 'fitted' | 'fittedOn' | null;
+
+const capitalised = (words: string) => words.charAt(0).toUpperCase() + words.slice(1);
 
 /** Why a failure of an asset cannot be stored, in a sentence that says what to do. */
 export function refusalSentence(
@@ -26,7 +29,7 @@ export function refusalSentence(
     case 'after-watch':
       return `Failures of ${asset.tag} are recorded up to ${day} only. Give a day up to then, or ask for the register to be put right.`;
     case 'fitted-after-failed':
-      return `A ${asset.itemSingular} fitted on ${day} cannot have failed before that day. Check the day it failed, or say “No, or not sure”.`;
+      return `${capitalised(withArticle(asset.itemSingular))} fitted on ${day} cannot have failed before that day. Check the day it failed, or say “No, or not sure”.`;
     case 'fitted-before-service':
       return `${asset.tag} went into service on ${day}, so nothing was fitted in it before. Check the day, or leave it empty.`;
   }
