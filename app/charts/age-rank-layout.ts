@@ -6,6 +6,9 @@ import { VERDICT_COLOUR } from '~/components/verdict';
 import { placeLabels, type LabelRequest } from './label-placement';
 import { FONT_SIZE, plotFrame, tenth, textWidth, type ChartSize, type Point, type Rect } from './plot-frame';
 
+/** So many failures can be read one by one in a table. */
+export const mostMarksListed = 60;
+
 export interface AgeRankMark {
   /** Share of its peers that were younger at that moment, 0…1. */
   readonly share: number;

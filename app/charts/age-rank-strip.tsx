@@ -5,6 +5,7 @@ import {
   type AgeRankData,
   type AgeRankLayout,
   type AgeRankMark,
+  mostMarksListed,
 } from './age-rank-layout';
 import { ChartAbsent, ChartFigure, type ChartTable } from './chart-figure';
 import { ChartLabels } from './chart-labels';
@@ -107,11 +108,9 @@ function sentenceFor(data: AgeRankData, count: number, weightless: number): stri
   return parts.join(' ');
 }
 
-const MOST_LISTED = 60;
-
 /** Each failure while they can be read one by one, counts by tenth of the strip beyond. */
 function tableFor(marks: readonly AgeRankMark[]): ChartTable {
-  if (marks.length <= MOST_LISTED) {
+  if (marks.length <= mostMarksListed) {
     return {
       columns: ['Failure', 'Peers younger'],
       rows: [...marks]

@@ -4,6 +4,7 @@ import { z } from 'zod';
 import { cautionNames } from '~/advice/caution-names';
 import { classFigures } from '~/advice/class-figures';
 import { changingActions } from '~/advice/proposal';
+import { mostMarksListed } from '~/charts/age-rank-layout';
 import { VerdictHistoryStrip } from '~/charts/verdict-history-strip';
 import type { Caution } from '~/advice/conclusion';
 import { Breadcrumbs } from '~/components/breadcrumbs';
@@ -94,7 +95,7 @@ function view({ asOf, findings, conclusion }: Assessment) {
       leftOut: findings.leftOut,
       rate: findings.rate,
       trend: { ...findings.trend, failureExposures: [] },
-      life: findings.life,
+      life: { ...findings.life, hazardBands: [] },
       ageRank: { ...findings.ageRank, marks: [] },
       modes: findings.modes,
       schedule: findings.schedule,
@@ -104,7 +105,11 @@ function view({ asOf, findings, conclusion }: Assessment) {
     figures: classFigures(findings),
     ageRank: {
       ...ageRank,
-      marks: marks.map(({ share, at }) => ({ share, day: formatCalendarDate(dayOf(at), 'short') })),
+      // Beyond so many the strip's table counts them instead of naming their days.
+      marks: marks.map(({ share, at }) => ({
+        share,
+        day: marks.length <= mostMarksListed ? formatCalendarDate(dayOf(at), 'short') : '',
+      })),
     },
     watchedSince:
       findings.extent.watchedFrom === null ? null : formatCalendarDate(dayOf(findings.extent.watchedFrom)),
