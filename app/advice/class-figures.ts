@@ -10,6 +10,8 @@ export interface ClassFigures {
     readonly totalExposure: number;
     readonly band: readonly { exposure: number; low: number; high: number }[];
     readonly powerLaw: readonly { exposure: number; expected: number }[];
+    /** Whether every failure lies within the band at its own exposure, whatever the points the band is drawn from. */
+    readonly staysInBand: boolean;
   };
   /** Ages in days or hours; rates a year, or per thousand hours. */
   readonly hazard: {
@@ -50,6 +52,7 @@ export function classFigures({ clock, trend, life }: Findings): ClassFigures {
         low,
         high,
       })),
+      staysInBand: staysInBand(trend.failureExposures, total),
       powerLaw:
         pooledSlope === null
           ? []
@@ -67,6 +70,25 @@ export function classFigures({ clock, trend, life }: Findings): ClassFigures {
       notSeenFrom: life.longestAge,
     },
   };
+}
+
+/** So many failures, evenly spread, tell whether the steps stay in the band: more would take longer than they tell. */
+const mostChecked = 400;
+
+/** The count steps up at a failure: it has left the band where neither before nor after it lies within. */
+function staysInBand(exposures: readonly number[], total: number): boolean {
+  const every = Math.ceil(exposures.length / mostChecked);
+  const checked = exposures.flatMap((exposure, before) =>
+    before % every === 0 ? [{ exposure, before }] : [],
+  );
+  const bands = constantRateBand(
+    exposures.length,
+    checked.map(({ exposure }) => exposure / total),
+  );
+  return bands.every(({ low, high }, index) => {
+    const { before } = checked[index]!;
+    return before + 1 >= low && before <= high;
+  });
 }
 
 /**

@@ -31,7 +31,7 @@ export function CumulativeFailuresChart(props: CumulativeFailuresChartProps) {
   return (
     <ChartFigure
       title={title}
-      sentence={sentence ?? sentenceFor(usable, exposureUnit)}
+      sentence={sentence ?? sentenceFor(usable, exposureUnit, data.staysInBand)}
       table={tableFor(usable, exposureUnit)}
       draw={(size) => {
         const layout = layoutCumulativeFailures(data, size);
@@ -59,21 +59,16 @@ export function CumulativeFailuresChart(props: CumulativeFailuresChartProps) {
 
 type Usable = NonNullable<ReturnType<typeof usableCumulativeFailures>>;
 
-function sentenceFor({ failures, totalExposure, steps, band }: Usable, unit: string): string {
+function sentenceFor(
+  { failures, totalExposure, band }: Usable,
+  unit: string,
+  staysInBand: boolean | undefined,
+): string {
   const start = `${formatNoun(failures, 'failure')} in ${formatTrimmed(totalExposure)} ${unit}`;
-  if (band.length < 2) return `${start}.`;
-  const inside = steps.every(({ exposure, count }) => isInBand(exposure, count, band));
-  return inside
+  if (band.length < 2 || staysInBand === undefined) return `${start}.`;
+  return staysInBand
     ? `${start}; the steps stay within the band a constant rate would give.`
     : `${start}; the steps leave the band a constant rate would give.`;
-}
-
-/** Whether the count after or before a step lies in the band at the nearest place it is given for. */
-function isInBand(exposure: number, count: number, band: Usable['band']): boolean {
-  const nearest = band.reduce((best, place) =>
-    Math.abs(place.exposure - exposure) < Math.abs(best.exposure - exposure) ? place : best,
-  );
-  return count >= nearest.low && count - 1 <= nearest.high;
 }
 
 function tableFor({ steps, band, powerLaw }: Usable, unit: string): ChartTable {

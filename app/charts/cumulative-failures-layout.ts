@@ -21,6 +21,8 @@ export interface CumulativeFailuresData {
   readonly band: readonly { readonly exposure: number; readonly low: number; readonly high: number }[];
   /** Failures expected by the fitted power law. */
   readonly powerLaw?: readonly { readonly exposure: number; readonly expected: number }[];
+  /** Whether the steps stay within the band; the sentence says nothing of it where this is left out. */
+  readonly staysInBand?: boolean;
 }
 
 export type CumulativeFailuresLayout = NonNullable<ReturnType<typeof layoutCumulativeFailures>>;

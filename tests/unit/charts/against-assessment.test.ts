@@ -27,6 +27,18 @@ const { schedule } = findings;
 // Drawing units are rounded to tenths.
 const digits = 0;
 
+it('says that steps left the band only where they did, however coarsely it is drawn', () => {
+  const year = 365.25;
+  const at = (exposures: number[]) =>
+    classFigures({
+      ...findings,
+      trend: { ...findings.trend, failureExposures: exposures, totalExposure: 100 * year },
+    }).cumulative.staysInBand;
+  expect(at(Array.from({ length: 99 }, (_, index) => (index + 1) * year))).toBe(true);
+  expect(at(Array.from({ length: 99 }, (_, index) => 100 * year * ((index + 1) / 100) ** 0.4))).toBe(false);
+  expect(at(Array.from({ length: 2000 }, (_, index) => ((index + 1) / 20.01) * year))).toBe(true);
+});
+
 describe.each(['wide', 'narrow'] as ChartSize[])('drawn from an assessment, %s', (size) => {
   it('the failures stand where their exposure and number say, within the band of a constant rate', () => {
     const layout = layoutCumulativeFailures(figures.cumulative, size)!;
