@@ -1,5 +1,5 @@
 import type { ClassEvidence } from '~/advice/class-evidence';
-import { followUp, followUpPeriod, type FollowUp } from '~/advice/follow-up';
+import { aimOf, followUp, followUpPeriod, type FollowUp } from '~/advice/follow-up';
 import type { FollowedChange } from '~/models/change-follow-ups.server';
 import { dayNumber } from '~/models/day-number';
 import type { Position } from '~/reliability/position';
@@ -9,7 +9,7 @@ const mostDaysBefore = 3 * 365.25;
 
 /**
  * What became of a class's changes in effect, from its records: against the time before, or for a trial against the
- * rest of the class over the same time. A change with no running time yet is left out.
+ * rest of the class over the same time; until a later change took over. A change with no running time yet is left out.
  */
 export function followUpsOf(
   evidence: ClassEvidence,
@@ -29,13 +29,16 @@ function followUpOf(evidence: ClassEvidence, change: FollowedChange): FollowUp |
   const taking = isTrial ? positions.filter((position) => takesPart(position, change.assetIds)) : positions;
   const rest = isTrial ? positions.filter((position) => !taking.includes(position)) : [];
   const before = change.previousEffectOn === null ? -Infinity : dayNumber(change.previousEffectOn);
+  const next = change.nextEffectOn === null ? Infinity : dayNumber(change.nextEffectOn);
+  const end = Math.min(now, next);
   return followUp({
-    action: change.action,
+    aim: aimOf(change),
+    isOver: next < now,
     against: isTrial ? 'rest' : 'before',
     base: isTrial
-      ? followUpPeriod(rest, start, now)
-      : followUpPeriod(positions, Math.max(before, start - mostDaysBefore), start),
-    after: followUpPeriod(taking, start, now),
+      ? followUpPeriod(rest, start, end)
+      : followUpPeriod(positions, Math.max(before, start - mostDaysBefore, watchBegan(positions)), start),
+    after: followUpPeriod(taking, start, end),
     costs: {
       plannedMinor: costs.groupPlannedMinor ?? costs.plannedMinor,
       failureMinor: costs.failureMinor,
@@ -48,3 +51,6 @@ function followUpOf(evidence: ClassEvidence, change: FollowedChange): FollowUp |
 function takesPart({ id }: Position, assetIds: readonly string[]): boolean {
   return assetIds.includes(id.split('#')[0] ?? id);
 }
+
+const watchBegan = (positions: readonly Position[]): number =>
+  positions.reduce((first, { watchFrom }) => Math.min(first, watchFrom), Infinity);

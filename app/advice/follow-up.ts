@@ -4,7 +4,6 @@ import type { Position } from '~/reliability/position';
 import { compareTwoRates, type CountInExposure } from '~/reliability/two-rates';
 import { watchedEvents } from '~/reliability/watched-events';
 import { countPeriod } from './compare-periods';
-import type { Action } from './proposal';
 
 /** What became of a change once it was in effect. */
 export const followUpWords = ['too-early', 'helped', 'no-difference', 'worse'] as const;
@@ -40,8 +39,18 @@ export const followUpSchema = z.object({
 });
 export type FollowUp = z.infer<typeof followUpSchema>;
 
+/** What a change is for: fewer failures, or less planned work. */
+export type Aim = 'prevent' | 'spare';
+
+/** More frequent renewals are to prevent failures, rarer ones or none are to spare work; null stands for none. */
+export function aimOf({ from, to }: { readonly from: number | null; readonly to: number | null }): Aim {
+  return (to ?? Infinity) < (from ?? Infinity) ? 'prevent' : 'spare';
+}
+
 export interface FollowUpInput {
-  readonly action: Extract<Action, 'start' | 'shorten' | 'lengthen' | 'stop' | 'trial'>;
+  readonly aim: Aim;
+  /** Whether it is in force no more, since a later change took over. */
+  readonly isOver: boolean;
   readonly against: FollowUp['against'];
   readonly base: FollowUpPeriod;
   readonly after: FollowUpPeriod;
@@ -51,6 +60,8 @@ export interface FollowUpInput {
 }
 
 const confidence = 0.9;
+/** Of the standard normal at 0.95, for the two-sided 90 % interval. */
+const normalQuantile95 = 1.645;
 
 /**
  * Rates whose ratio lies within these ends are called the same: the width that the trend's word "level" and the
@@ -71,10 +82,12 @@ export function followUpPeriod(positions: readonly Position[], from: number, to:
  * What a change did to the failures, by the exact conditional test of two Poisson rates (Przyborowski & Wilenski
  * 1940), and to the cost. It knows nothing of what else changed at the same time.
  *
- * A change that is to prevent failures (start, shorten) helped when there are clearly fewer, unless all
- * together it clearly costs more. One that is to spare planned work (stop, lengthen, trial) helped when all
- * together it clearly costs less, or, where no costs are given, when failures did not become more. Until the interval of
- * the ratio is clear of 1, or lies wholly within 0.67 to 1.5, it is too early to say. The rule is Intervale's own.
+ * One that is to prevent failures helped when there are clearly fewer, unless all together it clearly costs more;
+ * made it worse when there are clearly more; and made no difference when the rates are the same. One that is to spare
+ * planned work helped when all together it clearly costs less and made it worse when it clearly costs more; where the
+ * costs are not given or do not tell, it made it worse when there are clearly more failures, and helped when there
+ * are as many or fewer with less planned work. Until the interval of the ratio is clear of 1, or lies wholly
+ * within 0.67 to 1.5, it is too early to say. The rule is Intervale's own.
  *
  * @returns null where one of the periods holds no running time.
  */
@@ -84,44 +97,81 @@ export function followUp(input: FollowUpInput): FollowUp | null {
   const { ratio, lower, upper, p } = compareTwoRates(countOf(after), countOf(base), confidence);
   const test = { ratio, low: lower, high: upper, p };
   const cost = costOf(input, test);
-  const word = wordFor(input, test, cost);
-  const result = { word, against, base, after, ...test, cost };
-  return { ...result, sentence: sentenceFor(result, input) };
+  const judged = judge(input, { rate: rateChange(test), money: costChange(cost) });
+  const result = { word: judged.word, against, base, after, ...test, cost };
+  return { ...result, sentence: sentenceFor(judged.meaning, result, input) };
 }
 
 const countOf = ({ failures, exposure }: FollowUpPeriod): CountInExposure => ({ failures, exposure });
 
 type Test = Pick<FollowUp, 'ratio' | 'low' | 'high' | 'p'>;
 
-function wordFor({ action }: FollowUpInput, test: Test, cost: FollowUp['cost']): FollowUpWord {
-  const rate = rateChange(test);
-  const money = costChange(cost);
-  if (action === 'start' || action === 'shorten') {
-    if (rate === 'fewer') return money === 'dearer' ? 'worse' : 'helped';
-    if (rate === 'more') return 'worse';
-    return rate === 'same' ? 'no-difference' : 'too-early';
-  }
-  if (money === 'cheaper') return 'helped';
-  if (money === 'dearer') return 'worse';
-  if (rate === 'more') return money === null ? 'worse' : 'no-difference';
-  if (rate === 'same' || rate === 'fewer') return money === null ? 'helped' : 'no-difference';
-  return 'too-early';
+interface Judgement {
+  readonly word: FollowUpWord;
+  /** The word as a sentence. */
+  readonly meaning: string;
 }
 
-function rateChange({ low, high }: Test): 'fewer' | 'more' | 'same' | 'unclear' {
+interface Changes {
+  readonly rate: 'fewer' | 'more' | 'same' | 'unclear';
+  /** Null where there are no costs, or where they do not tell yet. */
+  readonly money: 'cheaper' | 'dearer' | null;
+}
+
+function judge(input: FollowUpInput, changes: Changes): Judgement {
+  return input.aim === 'prevent' ? judgePrevention(input, changes) : judgeSparing(input, changes);
+}
+
+function judgePrevention(input: FollowUpInput, { rate, money }: Changes): Judgement {
+  switch (rate) {
+    case 'fewer':
+      return money === 'dearer'
+        ? { word: 'worse', meaning: 'It made it worse: fewer fail, but all together more is spent.' }
+        : { word: 'helped', meaning: 'It helped: fewer fail.' };
+    case 'more':
+      return { word: 'worse', meaning: 'It made it worse: more fail.' };
+    case 'same':
+      return { word: 'no-difference', meaning: 'It made no difference: about as many fail.' };
+    case 'unclear':
+      return notYet(input);
+  }
+}
+
+function judgeSparing(input: FollowUpInput, { rate, money }: Changes): Judgement {
+  if (money === 'cheaper') return { word: 'helped', meaning: 'It helped: all together less is spent.' };
+  if (money === 'dearer') return { word: 'worse', meaning: 'It made it worse: all together more is spent.' };
+  if (rate === 'more') return { word: 'worse', meaning: 'It made it worse: more fail.' };
+  if (rate === 'unclear') return notYet(input);
+  const failing = rate === 'fewer' ? 'fewer fail' : 'about as many fail';
+  return isLessWork(input)
+    ? { word: 'helped', meaning: `It helped: less planned work, and ${failing}.` }
+    : { word: 'no-difference', meaning: `It made no difference: as much planned work, and ${failing}.` };
+}
+
+function notYet({ isOver }: FollowUpInput): Judgement {
+  const meaning = isOver ? 'It was not in force for long enough to say.' : 'Too early to say.';
+  return { word: 'too-early', meaning };
+}
+
+const isLessWork = ({ base, after }: FollowUpInput): boolean =>
+  after.plannedRenewals / after.exposure < base.plannedRenewals / base.exposure;
+
+function rateChange({ low, high }: Test): Changes['rate'] {
   if (high !== null && high < 1) return 'fewer';
   if (low > 1) return 'more';
   return low >= sameFrom && high !== null && high <= sameTo ? 'same' : 'unclear';
 }
 
-/** Null where there are no costs or where they do not tell yet. */
-function costChange(cost: FollowUp['cost']): 'cheaper' | 'dearer' | null {
+function costChange(cost: FollowUp['cost']): Changes['money'] {
   if (cost === null) return null;
   if (cost.afterHigh !== null && cost.afterHigh < cost.base) return 'cheaper';
   return cost.afterLow > cost.base ? 'dearer' : null;
 }
 
-/** Planned work as counted, failures at the base's rate times the ends of the ratio. */
+/**
+ * Planned work as counted, failures at the base's rate times the ends of the ratio: the interval says how far the
+ * failures' share could lie from the base's as counted (common practice, no source).
+ */
 function costOf(input: FollowUpInput, { low, high }: Test): FollowUp['cost'] {
   const { plannedMinor, failureMinor } = input.costs;
   if (plannedMinor === null || failureMinor === null) return null;
@@ -137,14 +187,16 @@ function costOf(input: FollowUpInput, { low, high }: Test): FollowUp['cost'] {
   };
 }
 
-function sentenceFor(result: Omit<FollowUp, 'sentence'>, input: FollowUpInput): string {
-  const { word, base, after, ratio, low, high, p, against } = result;
-  const what = against === 'rest' ? 'in the rest of the class over the same time' : 'before';
-  const counts = `${inTime(after, input)} since, ${inTime(base, input)} ${what}`;
+function sentenceFor(meaning: string, result: Omit<FollowUp, 'sentence'>, input: FollowUpInput): string {
+  const { base, after, ratio, low, high, p, against } = result;
+  const counts =
+    against === 'rest'
+      ? `${inTime(after, input)} on trial, ${inTime(base, input)} in the rest of the class over the same time`
+      : `${inTime(after, input)} since, ${inTime(base, input)} before`;
   const ends = formatInterval(low, high, (end) => formatFixed(end, 2));
   const numbers =
     ratio === null ? formatP(p) : `${formatFixed(ratio, 2)} times the rate (${ends}), ${formatP(p)}`;
-  return `${meaning(word, input)} ${counts}: ${numbers}.${untilClear(result, input)}`;
+  return `${meaning} ${counts}: ${numbers}.${untilClear(result, input)}`;
 }
 
 function inTime({ failures, exposure }: FollowUpPeriod, { unitsAYear }: FollowUpInput): string {
@@ -152,36 +204,41 @@ function inTime({ failures, exposure }: FollowUpPeriod, { unitsAYear }: FollowUp
   return `${formatNoun(failures, 'failure')} in ${formatQuantity(Number(years.toPrecision(2)), 'item-year')}`;
 }
 
-function meaning(word: FollowUpWord, { action }: FollowUpInput): string {
-  const spares = action !== 'start' && action !== 'shorten';
-  switch (word) {
-    case 'too-early':
-      return 'Too early to say.';
-    case 'helped':
-      return spares ? 'It helped: less is spent, all together.' : 'It helped: fewer fail.';
-    case 'no-difference':
-      return spares ? 'It made no difference that shows.' : 'It made no difference: as many fail.';
-    case 'worse':
-      return spares ? 'It made it worse: all together more is spent or more fail.' : 'It made it worse.';
+const daysAMonth = 365.25 / 12;
+
+/** How much longer until it would show that nothing changed, if nothing did. */
+function untilClear(result: Omit<FollowUp, 'sentence'>, { isOver }: FollowUpInput): string {
+  if (result.word !== 'too-early' || isOver) return '';
+  const days = daysUntilClear(result);
+  if (days === null) return '';
+  if (days === Infinity) {
+    return ' There were too few failures before for a difference ever to be ruled out; only a large one can show.';
   }
+  const months = Math.max(1, Math.ceil(days / daysAMonth));
+  if (months > 120) return ' If nothing changed, it would take more than 10 years to show.';
+  const span = months > 24 ? formatQuantity(Math.ceil(months / 12), 'year') : formatQuantity(months, 'month');
+  return ` If nothing changed, that would show in about ${span}.`;
 }
 
 /**
- * How many more failures it takes at today's rate until equal rates would show as equal: the variance of
- * ln ratio is about 1/n₁ + 1/n₂ (normal approximation, from memory).
+ * Days from now until the interval of a ratio of 1 lies within 0.67 to 1.5: the variance of ln ratio is about
+ * 1/n₁ + 1/n₂ (normal approximation, from memory). The time before stays as it is; the rest of the class goes on
+ * beside a trial, so that both counts grow.
+ *
+ * @returns Infinity where it never comes to that; null where nothing failed, so that nothing can be said.
  */
-function untilClear(
-  { word, base, after }: Omit<FollowUp, 'sentence'>,
-  { unitsAYear }: FollowUpInput,
-): string {
-  if (word !== 'too-early') return '';
-  const needed = 1 / ((Math.log(sameTo) / 1.645) ** 2 - 1 / base.failures);
-  if (!(needed > 0 && Number.isFinite(needed))) {
-    return ' There were too few failures before for a difference ever to be ruled out; only a large one can show.';
+function daysUntilClear({ base, after, against }: Omit<FollowUp, 'sentence'>): number | null {
+  const mostVariance = (Math.log(sameTo) / normalQuantile95) ** 2;
+  const elapsed = after.to - after.from;
+  const pace = after.exposure / elapsed;
+  if (against === 'rest') {
+    const failures = base.failures + after.failures;
+    if (failures === 0) return null;
+    const rate = failures / (base.exposure + after.exposure);
+    const restPace = base.exposure / elapsed;
+    return (1 / pace + 1 / restPace) / (rate * mostVariance) - elapsed;
   }
-  const rate = base.failures / base.exposure;
-  const pace = after.exposure / (after.to - after.from);
-  const months = ((needed / rate - after.exposure) / pace / 365.25) * 12;
-  if (!(months > 0 && unitsAYear > 0)) return '';
-  return ` If nothing changed, that would show in about ${formatQuantity(Math.max(1, Math.ceil(months)), 'month')}.`;
+  const left = base.failures === 0 ? 0 : mostVariance - 1 / base.failures;
+  if (!(left > 0)) return Infinity;
+  return (1 / left) * (base.exposure / base.failures / pace) - elapsed;
 }

@@ -6,6 +6,14 @@ import type { Findings } from '~/advice/findings';
 export const changeActions = ['start', 'shorten', 'lengthen', 'stop', 'trial'] as const;
 export type ChangeAction = (typeof changeActions)[number];
 
+/** How a list is cut: waiting for somebody, waiting for a decision, in effect and followed, or past. */
+export const changeGroups = ['open', 'to-decide', 'followed', 'past'] as const;
+export type ChangeGroup = (typeof changeGroups)[number];
+
+/** How a list may be sorted; by state, those that wait stand first. */
+export const changeSorts = ['state', 'class', 'saving', 'put-forward'] as const;
+export type ChangeSort = (typeof changeSorts)[number];
+
 export const changeStates = [
   'put-forward',
   'asked-back',
@@ -38,6 +46,7 @@ export const changeSteps = [
   'put-forward',
   'asked-back',
   'answered',
+  'revised',
   'approved',
   'declined',
   'withdrawn',

@@ -3,19 +3,17 @@ import { conclusionSchema } from '~/advice/conclusion';
 import { findingsSchema } from '~/advice/findings';
 import { followUpSchema } from '~/advice/follow-up';
 import type { Database } from '../../db/connection';
-import { writeAudit } from './audit.server';
-import { constraintOf } from './constraint';
 import {
   changeActions,
   changeStates,
   openStates,
   type Change,
+  type ChangeGroup,
   type ChangeRow,
+  type ChangeSort,
   type ChangeState,
   type ChangeStep,
-  type ChangeTerms,
 } from './schedule-change';
-import { findRenewingTask, putIntoEffect, takeOutOfEffect } from './schedule-effect.server';
 
 export interface ChangeListFilter {
   /** Waiting for somebody, waiting for a decision, in effect and followed, or past. */
@@ -23,13 +21,10 @@ export interface ChangeListFilter {
   classId?: string;
   /** Only of classes with an asset at this site. */
   siteId?: string;
-  /** From 1. */
-  page: number;
-  pageSize: number;
+  /** By state unless given, those that wait first. */
+  sort?: ChangeSort;
+  direction?: 'asc' | 'desc';
 }
-
-export const changeGroups = ['open', 'to-decide', 'followed', 'past'] as const;
-export type ChangeGroup = (typeof changeGroups)[number];
 
 const statesOf: Record<ChangeGroup, readonly ChangeState[]> = {
   open: openStates,
@@ -88,25 +83,23 @@ const rowSchema = z
     saving: savingValue === null ? null : { value: savingValue, low: savingLow ?? 0, high: savingHigh ?? 0 },
   }));
 
-/** One page of the changes, those that wait first, then those in effect, the latest first within each. */
+const orderBy: Record<ChangeSort, string> = {
+  state: `case when x.state in ('put-forward', 'asked-back') then 0 when x.state = 'approved' then 1 else 2 end`,
+  class: 'lower(c.name)',
+  saving: 'x.saving_per_year_minor',
+  'put-forward': 'x.put_forward_at',
+};
+
+/** One page of the changes; the latest first among equals. */
 export async function listChanges(
   db: Database,
-  { group, classId, siteId, page, pageSize }: ChangeListFilter,
+  filter: ChangeListFilter & { /** From 1. */ page: number; pageSize: number },
 ): Promise<{ rows: ChangeRow[]; total: number }> {
-  const conditions: string[] = [];
-  if (group) conditions.push('x.state = any(:states)');
-  if (classId) conditions.push('x.class_id = :classId');
-  if (siteId)
-    conditions.push('exists (select from assets s where s.class_id = x.class_id and s.site_id = :siteId)');
-  const where = conditions.length === 0 ? '' : `where ${conditions.join(' and ')}`;
-  const bindings = {
-    ...(group ? { states: [...statesOf[group]] } : {}),
-    ...(classId ? { classId } : {}),
-    ...(siteId ? { siteId } : {}),
-  };
+  const { sort = 'state', direction = 'asc', page, pageSize } = filter;
+  const { where, bindings } = conditionsOf(filter);
   const { rows } = await db.raw<{ rows: unknown[] }>(
     `select ${columns} from ${tables} ${where}
-      order by case when x.state in ('put-forward', 'asked-back') then 0 when x.state = 'approved' then 1 else 2 end,
+      order by ${orderBy[sort]} ${direction === 'asc' ? 'asc' : 'desc'} nulls last,
                x.put_forward_at desc, x.id
       limit :limit offset :offset`,
     { ...bindings, limit: pageSize, offset: (page - 1) * pageSize },
@@ -116,6 +109,32 @@ export async function listChanges(
     bindings,
   );
   return { rows: rows.map((row) => rowSchema.parse(row)), total: counted.rows[0]?.total ?? 0 };
+}
+
+/** Every change of a filter, a batch at a time. */
+export async function* everyChange(db: Database, filter: ChangeListFilter): AsyncGenerator<ChangeRow> {
+  const pageSize = 500;
+  for (let page = 1; ; page += 1) {
+    const { rows } = await listChanges(db, { ...filter, page, pageSize });
+    yield* rows;
+    if (rows.length < pageSize) return;
+  }
+}
+
+function conditionsOf({ group, classId, siteId }: ChangeListFilter) {
+  const conditions: string[] = [];
+  if (group) conditions.push('x.state = any(:states)');
+  if (classId) conditions.push('x.class_id = :classId');
+  if (siteId)
+    conditions.push('exists (select from assets s where s.class_id = x.class_id and s.site_id = :siteId)');
+  return {
+    where: conditions.length === 0 ? '' : `where ${conditions.join(' and ')}`,
+    bindings: {
+      ...(group ? { states: [...statesOf[group]] } : {}),
+      ...(classId ? { classId } : {}),
+      ...(siteId ? { siteId } : {}),
+    },
+  };
 }
 
 const evidenceSchema = z.object({ findings: findingsSchema, conclusion: conclusionSchema });
@@ -158,278 +177,13 @@ export async function findOpenChange(db: Database, classId: string): Promise<str
   return row?.id;
 }
 
-export type PutForwardResult =
-  | { outcome: 'stored' }
-  | { outcome: 'already-stored' }
-  /** Another change of the class waits for a decision. */
-  | { outcome: 'another-open'; changeId: string }
-  /** The class is not assessed, or is statutory or endangers people. */
-  | { outcome: 'not-assessed' | 'marked' }
-  /** The schedule in force is not the one the person saw. */
-  | { outcome: 'schedule-changed' };
+export type LockedChange = z.output<typeof rowSchema>;
 
-interface PutForwardInput {
-  /** Made by the client: the same form sent twice puts one change forward. */
-  id: string;
-  classId: string;
-  terms: ChangeTerms;
-  origin: 'proposal' | 'by-hand';
-  /** The renewing task the person saw in force; null for none. */
-  taskId: string | null;
-  personId: string;
-  now: Date;
-  /** The day it is, in the organisation's zone. */
-  today: string;
-}
-
-/** Puts a change forward with the evidence as it stands, frozen. */
-export async function putForward(db: Database, input: PutForwardInput): Promise<PutForwardResult> {
-  try {
-    return await db.transaction((trx) => putForwardWithin(trx, input));
-  } catch (error) {
-    if (constraintOf(error) !== 'schedule_changes_one_open') throw error;
-    const changeId = await findOpenChange(db, input.classId);
-    if (changeId === undefined) throw error;
-    return { outcome: 'another-open', changeId };
-  }
-}
-
-async function putForwardWithin(trx: Database, input: PutForwardInput): Promise<PutForwardResult> {
-  const { id, classId, terms, origin, taskId, personId, now, today } = input;
-  const stored = (await trx('schedule_changes').where('id', id).first('id', 'put_forward_by')) as
-    { id: string } | undefined;
-  if (stored) return { outcome: 'already-stored' };
-  const { rows } = await trx.raw<{ rows: { isMarked: boolean; asOf: string | null }[] }>(
-    `select c.statutory or c.endangers_people as "isMarked", a.as_of as "asOf"
-       from asset_classes c left join assessments a on a.id = c.current_assessment_id where c.id = ?`,
-    [classId],
-  );
-  const found = rows[0];
-  if (found?.asOf == null) return { outcome: 'not-assessed' };
-  if (found.isMarked) return { outcome: 'marked' };
-  const standing = await findRenewingTask(trx, classId, today);
-  if ((standing?.id ?? null) !== taskId) return { outcome: 'schedule-changed' };
-
-  await trx.raw(
-    `insert into schedule_changes (id, class_id, task_id, action, from_interval, to_interval, origin, reason,
-                                   saving_per_year_minor, saving_low_minor, saving_high_minor, saving_share,
-                                   evidence_as_of, evidence, put_forward_by, put_forward_at)
-     select :id, c.id, :taskId, :action, :from, :to, :origin, :reason, :saving, :low, :high, :share,
-            a.as_of, a.detail, :personId, :now
-       from asset_classes c join assessments a on a.id = c.current_assessment_id where c.id = :classId`,
-    { id, classId, taskId, origin, personId, now, ...columnsOf(terms) },
-  );
-  await setPart(trx, id, terms);
-  await addStep(trx, id, { step: 'put-forward', words: terms.reason, personId, now });
-  await writeAudit(trx, {
-    personId,
-    action: 'put-forward',
-    subject: 'schedule-change',
-    subjectId: id,
-    after: { classId, ...terms },
-  });
-  return { outcome: 'stored' };
-}
-
-function columnsOf({ action, from, to, reason, saving, share }: ChangeTerms) {
-  return {
-    action,
-    from,
-    to,
-    reason,
-    saving: saving?.value ?? null,
-    low: saving?.low ?? null,
-    high: saving?.high ?? null,
-    share,
-  };
-}
-
-async function setPart(trx: Database, changeId: string, { assetIds }: ChangeTerms): Promise<void> {
-  await trx('schedule_change_assets').where('change_id', changeId).delete();
-  if (assetIds.length === 0) return;
-  await trx('schedule_change_assets').insert(
-    assetIds.map((assetId) => ({ change_id: changeId, asset_id: assetId })),
-  );
-}
-
-export type DecideResult =
-  | { outcome: 'done' }
-  /** It is not in the state, or not at the version, that the person saw; somebody moved it on. */
-  | { outcome: 'moved-on' }
-  /** Nobody decides on what they put forward, and nobody speaks for another in what is theirs to do. */
-  | { outcome: 'own-change' | 'not-yours' }
-  | { outcome: 'marked' | 'schedule-changed' }
-  | { outcome: 'another-open'; changeId: string };
-
-export interface Decision {
-  changeId: string;
-  version: number;
-  personId: string;
-  words: string | null;
-  now: Date;
-  /** The day it is, in the organisation's zone. */
-  today: string;
-}
-
-/** Approves a change: it takes effect on a day, today or later. */
-export function approveChange(db: Database, decision: Decision & { day: string }): Promise<DecideResult> {
-  return move(db, decision, { from: ['put-forward'], step: 'approved' }, async (trx, change) => {
-    const { personId, now, day } = decision;
-    if (change.putForwardById === personId) return { outcome: 'own-change' };
-    if (change.isMarked) return { outcome: 'marked' };
-    const effect = await putIntoEffect(trx, await inEffect(trx, change), { day, personId });
-    if (effect.outcome !== 'done') return effect;
-    await trx('schedule_changes').where('id', change.id).update({
-      state: 'approved',
-      decided_by: personId,
-      decided_at: now,
-      takes_effect_on: day,
-      new_task_id: effect.newTaskId,
-    });
-    return { outcome: 'done' };
-  });
-}
-
-/** Declines a change, with a reason. */
-export function declineChange(db: Database, decision: Decision): Promise<DecideResult> {
-  return move(db, decision, { from: openStates, step: 'declined' }, async (trx, change) => {
-    const { personId, now } = decision;
-    if (change.putForwardById === personId) return { outcome: 'own-change' };
-    await trx('schedule_changes')
-      .where('id', change.id)
-      .update({ state: 'declined', decided_by: personId, decided_at: now });
-    return { outcome: 'done' };
-  });
-}
-
-/** Asks back: the change waits for an answer. */
-export function askBack(db: Database, decision: Decision): Promise<DecideResult> {
-  return move(db, decision, { from: ['put-forward'], step: 'asked-back' }, async (trx, change) => {
-    if (change.putForwardById === decision.personId) return { outcome: 'own-change' };
-    await trx('schedule_changes').where('id', change.id).update({ state: 'asked-back' });
-    return { outcome: 'done' };
-  });
-}
-
-/** Answers what was asked back: the change waits for a decision again. */
-export function answerChange(db: Database, decision: Decision): Promise<DecideResult> {
-  return move(db, decision, { from: ['asked-back'], step: 'answered' }, async (trx, change) => {
-    await trx('schedule_changes').where('id', change.id).update({ state: 'put-forward' });
-    return { outcome: 'done' };
-  });
-}
-
-/** Withdraws a change that waits: only who put it forward may. */
-export function withdrawChange(db: Database, decision: Decision): Promise<DecideResult> {
-  return move(db, decision, { from: openStates, step: 'withdrawn' }, async (trx, change) => {
-    if (change.putForwardById !== decision.personId) return { outcome: 'not-yours' };
-    await trx('schedule_changes').where('id', change.id).update({ state: 'withdrawn' });
-    return { outcome: 'done' };
-  });
-}
-
-/** Puts a withdrawn change forward again: the undo of withdrawing. */
-export async function reopenChange(db: Database, decision: Decision): Promise<DecideResult> {
-  try {
-    return await move(db, decision, { from: ['withdrawn'], step: 'put-forward' }, async (trx, change) => {
-      if (change.putForwardById !== decision.personId) return { outcome: 'not-yours' };
-      await trx('schedule_changes').where('id', change.id).update({ state: 'put-forward' });
-      return { outcome: 'done' };
-    });
-  } catch (error) {
-    if (constraintOf(error) !== 'schedule_changes_one_open') throw error;
-    const change = await findChange(db, decision.changeId);
-    const changeId = change && (await findOpenChange(db, change.classId));
-    if (changeId === undefined) throw error;
-    return { outcome: 'another-open', changeId };
-  }
-}
-
-/** The way back: the schedule goes on from today as it was before. */
-export function takeBackChange(db: Database, decision: Decision): Promise<DecideResult> {
-  return move(db, decision, { from: ['approved'], step: 'taken-back' }, async (trx, change) => {
-    const { today, personId } = decision;
-    const { newTaskId, takesEffectOn } = change;
-    if (takesEffectOn === null) throw new Error(`change ${change.id} is approved without a day`);
-    await takeOutOfEffect(
-      trx,
-      { ...(await inEffect(trx, change)), newTaskId, takesEffectOn },
-      { day: today, personId },
-    );
-    await trx('schedule_changes')
-      .where('id', change.id)
-      .update({ state: 'taken-back', taken_back_on: today });
-    return { outcome: 'done' };
-  });
-}
-
-type LockedChange = Pick<
-  Change,
-  | 'id'
-  | 'classId'
-  | 'action'
-  | 'to'
-  | 'taskId'
-  | 'newTaskId'
-  | 'putForwardById'
-  | 'isMarked'
-  | 'takesEffectOn'
->;
-
-async function move(
-  db: Database,
-  decision: Decision,
-  { from, step }: { from: readonly ChangeState[]; step: ChangeStep['step'] },
-  act: (trx: Database, change: LockedChange) => Promise<DecideResult>,
-): Promise<DecideResult> {
-  const { changeId, version, personId, words, now } = decision;
-  return db.transaction(async (trx) => {
-    await trx('schedule_changes').where('id', changeId).forUpdate().select('id');
-    const { rows } = await trx.raw<{ rows: unknown[] }>(`select ${columns} from ${tables} where x.id = ?`, [
-      changeId,
-    ]);
-    const change = rows[0] === undefined ? undefined : rowSchema.parse(rows[0]);
-    if (change?.version !== version || !from.includes(change.state)) return { outcome: 'moved-on' };
-    const result = await act(trx, change);
-    if (result.outcome !== 'done') return result;
-    await trx('schedule_changes')
-      .where('id', changeId)
-      .update({ version: version + 1 });
-    await addStep(trx, changeId, { step, words, personId, now });
-    await writeAudit(trx, {
-      personId,
-      action: step,
-      subject: 'schedule-change',
-      subjectId: changeId,
-      before: { state: change.state },
-      after: { words },
-    });
-    return result;
-  });
-}
-
-async function inEffect(trx: Database, { id, classId, action, taskId, to }: LockedChange) {
-  const assets = (await trx('schedule_change_assets').where('change_id', id).select('asset_id')) as {
-    asset_id: string;
-  }[];
-  return { id, classId, action, taskId, to, assetIds: assets.map((row) => row.asset_id) };
-}
-
-async function addStep(
-  trx: Database,
-  changeId: string,
-  {
-    step,
-    words,
-    personId,
-    now,
-  }: { step: ChangeStep['step']; words: string | null; personId: string; now: Date },
-): Promise<void> {
-  await trx('schedule_change_steps').insert({
-    change_id: changeId,
-    step,
-    words,
-    person_id: personId,
-    at: now,
-  });
+/** A change as it stands, held against others until the transaction ends. */
+export async function lockChange(trx: Database, changeId: string): Promise<LockedChange | undefined> {
+  await trx('schedule_changes').where('id', changeId).forUpdate().select('id');
+  const { rows } = await trx.raw<{ rows: unknown[] }>(`select ${columns} from ${tables} where x.id = ?`, [
+    changeId,
+  ]);
+  return rows[0] === undefined ? undefined : rowSchema.parse(rows[0]);
 }

@@ -49,6 +49,29 @@ const taskColumns = `t.id, t.class_id as "classId", t.name, t.kind, t.interval_d
   t.interval_hours as "intervalHours", t.statutory_reference as "statutoryReference",
   t.cost_minor as "costMinor", t.starts_on as "startsOn", t.ends_on as "endsOn"`;
 
+/** Whether a task comes round as often as a number of clock units says; null stands for no task. */
+export function isInterval(
+  task: MaintenanceTaskRow | undefined,
+  interval: number | null,
+  clock: 'calendar-days' | 'operating-hours',
+): boolean {
+  if (task === undefined || interval === null) return task === undefined && interval === null;
+  const ofTask = clock === 'calendar-days' ? task.intervalDays : task.intervalHours;
+  // Of a task on the other clock the night knows the running hours a year; here it is taken as it is.
+  return ofTask === null || Math.abs(ofTask - interval) < 0.01;
+}
+
+/** Whether a schedule of the whole class is to begin after a day. */
+async function hasLaterTask(trx: Database, classId: string, day: string): Promise<boolean> {
+  const { rows } = await trx.raw<{ rows: unknown[] }>(
+    `select from maintenance_tasks t
+      where class_id = :classId and kind in ('replace', 'restore') and starts_on > :day
+        and not exists (select from maintenance_task_assets a where a.task_id = t.id) limit 1`,
+    { classId, day },
+  );
+  return rows.length > 0;
+}
+
 export type EffectResult =
   | { outcome: 'done'; newTaskId: string | null }
   /** The schedule is no longer the one the change was put forward against. */
@@ -67,6 +90,9 @@ export async function putIntoEffect(
   const task = change.taskId === null ? undefined : await lockTask(trx, change.taskId);
   const standing = await findRenewingTask(trx, change.classId, day);
   if (task?.id !== standing?.id || (task?.endsOn ?? null) !== null) return { outcome: 'schedule-changed' };
+  if (change.action !== 'trial' && (await hasLaterTask(trx, change.classId, day))) {
+    return { outcome: 'schedule-changed' };
+  }
 
   if (task !== undefined && change.action !== 'trial') await endTask(trx, task, day, personId);
   if (change.to === null) return { outcome: 'done', newTaskId: null };
@@ -90,33 +116,60 @@ export async function putIntoEffect(
 
 /**
  * Takes a change out again from a day on: what it ended goes on as it was. Before the day it was to begin, it is as
- * if it had never been approved.
+ * if it had never been approved; so too on that very day, unless something was done under it.
+ *
+ * @returns 'taken-over' where the schedule has been changed again since: what it is now stays as it is.
  */
 export async function takeOutOfEffect(
   trx: Database,
   change: ChangeInEffect & { newTaskId: string | null; takesEffectOn: string },
   { day, personId }: { day: string; personId: string },
-): Promise<void> {
+): Promise<{ outcome: 'done' | 'taken-over' }> {
   const former = change.taskId === null ? undefined : await lockTask(trx, change.taskId);
   const current = change.newTaskId === null ? undefined : await lockTask(trx, change.newTaskId);
-  const hasBegun = day > change.takesEffectOn;
-  if (current !== undefined && hasBegun) await endTask(trx, current, day, personId);
+  if (await isTakenOver(trx, change, current, day)) return { outcome: 'taken-over' };
+  const hasBegun =
+    day > change.takesEffectOn || (current !== undefined && (await isReferredTo(trx, current)));
+  const endsOn = current === undefined || !hasBegun ? day : await endTask(trx, current, day, personId);
   if (current !== undefined && !hasBegun) await dropTask(trx, change.id, current, personId);
-  if (former === undefined || change.action === 'trial') return;
+  if (former === undefined || change.action === 'trial') return { outcome: 'done' };
   if (hasBegun) {
     await addTask(trx, {
       ...former,
       interval: null,
       replacesTaskId: current?.id ?? former.id,
-      startsOn: day,
+      startsOn: endsOn,
       personId,
     });
-    return;
+    return { outcome: 'done' };
   }
   await trx('maintenance_tasks')
     .where('id', former.id)
-    .update({ ends_on: null, version: trx.raw('version + 1') });
+    .update({ ends_on: null, version: trx.raw('version + 1'), updated_at: trx.fn.now() });
   await audit(trx, personId, 'reopen', former.id, { endsOn: former.endsOn }, { endsOn: null });
+  return { outcome: 'done' };
+}
+
+/** Whether another schedule has taken the place of the one a change made. */
+async function isTakenOver(
+  trx: Database,
+  { classId, action }: ChangeInEffect,
+  current: MaintenanceTaskRow | undefined,
+  day: string,
+): Promise<boolean> {
+  if (action === 'trial') return false;
+  if (current !== undefined) return current.endsOn !== null;
+  const standing = await findRenewingTask(trx, classId, day);
+  return (standing !== undefined && standing.endsOn === null) || (await hasLaterTask(trx, classId, day));
+}
+
+/** Whether work was logged under a task or a change was put forward against it. */
+async function isReferredTo(trx: Database, { id }: MaintenanceTaskRow): Promise<boolean> {
+  const { rows } = await trx.raw<{ rows: unknown[] }>(
+    `select from planned_work where task_id = :id union all select from schedule_changes where task_id = :id limit 1`,
+    { id },
+  );
+  return rows.length > 0;
 }
 
 async function lockTask(trx: Database, taskId: string): Promise<MaintenanceTaskRow | undefined> {
@@ -127,13 +180,18 @@ async function lockTask(trx: Database, taskId: string): Promise<MaintenanceTaskR
   return rows[0];
 }
 
-/** A task that began on the very day lasts that day: an empty stretch of time is no task. */
+/**
+ * A task that began on the very day lasts that day: an empty stretch of time is no task. One that has ended stays ended.
+ *
+ * @returns the first day on which it no longer holds.
+ */
 async function endTask(
   trx: Database,
   task: MaintenanceTaskRow,
   day: string,
   personId: string,
-): Promise<void> {
+): Promise<string> {
+  if (task.endsOn !== null && task.endsOn <= day) return task.endsOn;
   const [ended] = (await trx('maintenance_tasks')
     .where('id', task.id)
     .update({
@@ -142,7 +200,9 @@ async function endTask(
       updated_at: trx.fn.now(),
     })
     .returning('ends_on')) as { ends_on: string }[];
-  await audit(trx, personId, 'end', task.id, { endsOn: task.endsOn }, { endsOn: ended?.ends_on });
+  const endsOn = ended!.ends_on;
+  await audit(trx, personId, 'end', task.id, { endsOn: task.endsOn }, { endsOn });
+  return endsOn;
 }
 
 /** A task that never began leaves no trace but in the audit trail. */

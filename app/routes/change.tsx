@@ -1,5 +1,4 @@
 import { parseWithZod } from '@conform-to/zod/v4';
-import type { ReactNode } from 'react';
 import { data, Form, href, Link } from 'react-router';
 import { z } from 'zod';
 import { changeInWords } from '~/advice/change-words';
@@ -12,7 +11,13 @@ import {
   stepWords,
   sureWords,
 } from '~/components/changes/change-words';
-import { longestWords, ManagerForms, WordsForm, type Refused } from '~/components/changes/decision-forms';
+import {
+  ApproveForm,
+  DeclineOrAsk,
+  longestWords,
+  WordsForm,
+  type Refused,
+} from '~/components/changes/decision-forms';
 import { CautionsThen, Evidence } from '~/components/changes/evidence';
 import { FollowUpFigures } from '~/components/changes/follow-up-figures';
 import { Disclosure } from '~/components/disclosure';
@@ -22,18 +27,19 @@ import { Notice } from '~/components/notice';
 import { formatCalendarDate, formatDateTime } from '~/format/date';
 import { formatNoun } from '~/format/number';
 import { currentVerdict } from '~/models/assessments.server';
-import type { Change } from '~/models/schedule-change';
+import { dayNumber, dayOf } from '~/models/day-number';
+import { openStates, type Change } from '~/models/schedule-change';
 import {
   answerChange,
   approveChange,
   askBack,
   declineChange,
-  findChange,
   reopenChange,
   takeBackChange,
   withdrawChange,
   type DecideResult,
-} from '~/models/schedule-changes.server';
+} from '~/models/schedule-changes-decide.server';
+import { findChange } from '~/models/schedule-changes.server';
 import { now, today } from '~/services/clock.server';
 import { redirectWithToast, type ToastInput } from '~/services/flash.server';
 import { organisation, requireRole, type Viewer } from '~/services/viewer.server';
@@ -83,19 +89,20 @@ export async function loader({ context, request, params }: Route.LoaderArgs) {
 }
 
 /** What the viewer may do with a change as it stands. The action checks each for itself. */
-function mayOf(
-  { id, roles }: Viewer,
-  change: Change,
-): Record<'decide' | 'answer' | 'withdraw' | 'reopen' | 'takeBack', boolean> {
-  const own = change.putForwardById === id;
+function mayOf({ id, roles }: Viewer, { state, isMarked, putForwardById }: Change) {
+  const own = putForwardById === id;
   const lead = roles.includes('lead');
   const manager = roles.includes('manager');
+  const isOpen = openStates.includes(state);
   return {
-    decide: manager && !own && !change.isMarked && change.state === 'put-forward',
-    answer: lead && change.state === 'asked-back',
-    withdraw: lead && own && (change.state === 'put-forward' || change.state === 'asked-back'),
-    reopen: lead && own && change.state === 'withdrawn',
-    takeBack: manager && change.state === 'approved',
+    approve: manager && !own && !isMarked && state === 'put-forward',
+    decline: manager && !own && isOpen,
+    askBack: manager && !own && state === 'put-forward',
+    answer: lead && state === 'asked-back',
+    revise: lead && own && isOpen && !isMarked,
+    withdraw: lead && own && isOpen,
+    reopen: lead && own && state === 'withdrawn',
+    takeBack: manager && state === 'approved',
   };
 }
 
@@ -114,15 +121,31 @@ export async function action({ context, request, params }: Route.ActionArgs) {
 
   const day = today(timeZone);
   const { value } = submission;
-  if (value.intent === 'approve' && value.day < day) {
-    const error = `That day is over; the earliest is today, ${formatCalendarDate(day)}.`;
-    return data(submission.reply({ fieldErrors: { day: [error] } }), { status: 400 });
-  }
+  const badDay = value.intent === 'approve' ? refuseDay(value.day, day) : null;
+  if (badDay !== null) return data(submission.reply({ fieldErrors: { day: [badDay] } }), { status: 400 });
   const result = await decide(value, { changeId: change.id, personId: viewer.id, today: day });
   if (result.outcome === 'done') {
     return redirectWithToast(href('/changes/:changeId', { changeId: change.id }), toastFor(value, change));
   }
-  return data(submission.reply({ formErrors: [refusalOf(result)] }), { status: 409 });
+  const sentence = result.outcome === 'moved-on' ? await movedOnWords(change.id) : refusalOf(result);
+  return data(submission.reply({ formErrors: [sentence] }), { status: 409 });
+}
+
+/** Approvals are for the schedule to come: not for a day that is over, nor for one that is surely a slip. */
+function refuseDay(day: string, first: string): string | null {
+  if (day < first) return `That day is over; the earliest is today, ${formatCalendarDate(first)}.`;
+  const last = dayOf(dayNumber(first) + mostDaysAhead);
+  return day > last ? `That is far ahead; the latest is ${formatCalendarDate(last)}.` : null;
+}
+const mostDaysAhead = 731;
+
+/** What the first of two people did, for the second. */
+async function movedOnWords(changeId: string): Promise<string> {
+  const last = (await changeOf(changeId)).steps.at(-1);
+  const who = last
+    ? `${last.personName} ${stepWords[last.step]} meanwhile`
+    : 'Somebody moved it on meanwhile';
+  return `${who}. Look at it again below; what you typed is still here.`;
 }
 
 function decide(
@@ -173,10 +196,8 @@ function toastFor(form: ChangeForm, change: Change): ToastInput {
   }
 }
 
-function refusalOf({ outcome }: Exclude<DecideResult, { outcome: 'done' }>): string {
+function refusalOf({ outcome }: Exclude<DecideResult, { outcome: 'done' | 'moved-on' }>): string {
   switch (outcome) {
-    case 'moved-on':
-      return 'Somebody has moved this change on meanwhile. Look at it again below; what you typed is still here.';
     case 'own-change':
       return 'You put this forward yourself: somebody else has to decide.';
     case 'not-yours':
@@ -185,6 +206,8 @@ function refusalOf({ outcome }: Exclude<DecideResult, { outcome: 'done' }>): str
       return 'The class is statutory or its failure endangers people: this is not decided here.';
     case 'schedule-changed':
       return 'The schedule has been changed since this was put forward. Ask for it to be put forward anew.';
+    case 'taken-over':
+      return 'The schedule has been changed again since. Put forward what is wanted instead.';
     case 'another-open':
       return 'Another change of this class waits for a decision meanwhile.';
   }
@@ -205,10 +228,8 @@ export const meta: Route.MetaFunction = ({ loaderData }) => [
 ];
 
 export default function ChangePage({ loaderData, actionData }: Route.ComponentProps) {
-  const { change, verdictNow, may, isOwn, isManager, currency, timeZone, today: day } = loaderData;
-  const refused: Refused = actionData;
-  const formErrors = (refused?.error?.[''] ?? []).map((message) => ({ fieldId: null, message }));
-  const { clock, part } = change;
+  const { change, verdictNow, currency, timeZone } = loaderData;
+  const formErrors = (actionData?.error?.[''] ?? []).map((message) => ({ fieldId: null, message }));
   return (
     <article className="max-w-[46rem]">
       <Breadcrumbs
@@ -218,78 +239,124 @@ export default function ChangePage({ loaderData, actionData }: Route.ComponentPr
         ]}
       />
       <h1>{change.className}</h1>
-      <p className="mt-2 text-[1.3rem] leading-snug font-bold">{changeInWords(change, clock)}</p>
+      <p className="mt-2 text-[1.3rem] leading-snug font-bold">{changeInWords(change, change.clock)}</p>
       <ErrorSummary errors={formErrors} title="Nothing was changed" />
-      <FigureList
-        items={[
-          { name: 'State', value: <StateInWords change={change} timeZone={timeZone} /> },
-          { name: 'Expected saving', value: savingWords(change, currency) },
-          { name: 'How sure', value: sureWords(change) },
-          ...(part.length === 0 ? [] : [{ name: 'Part of the class', value: <Part part={part} /> }]),
-          {
-            name: 'From',
-            value: change.origin === 'proposal' ? 'the night’s proposal' : 'a number chosen by hand',
-          },
-        ]}
-      />
+      <Terms change={change} currency={currency} timeZone={timeZone} />
       <p className="mt-4 max-w-[60ch] [overflow-wrap:anywhere] whitespace-pre-line">{change.reason}</p>
-      {change.followUp !== null && change.followUpAsOf !== null && (
-        <FollowUpFigures
-          followUp={change.followUp}
-          asOf={change.followUpAsOf}
-          clock={clock}
-          currency={currency}
-        />
-      )}
+      <WhatCameOfIt change={change} currency={currency} />
       <CautionsThen change={change} />
       {change.isMarked && <MarkedNotice />}
-      <Decisions>
-        {may.decide && <ManagerForms version={change.version} today={day} refused={refused} />}
-        {isManager && isOwn && change.state === 'put-forward' && (
-          <Notice title="Somebody else decides">
-            You put this forward; another manager has to approve it.
-          </Notice>
-        )}
-        {may.answer && (
-          <WordsForm
-            intent="answer"
-            version={change.version}
-            label="Your answer"
-            required
-            button="Answer"
-            refused={refused}
-          />
-        )}
-        {may.withdraw && <OneButton intent="withdraw" version={change.version} label="Withdraw" />}
-        {may.reopen && <OneButton intent="reopen" version={change.version} label="Put it forward again" />}
-        {may.takeBack && (
-          <Disclosure summary="Take it back" open={refused?.initialValue?.intent === 'take-back'}>
-            <WordsForm
-              intent="take-back"
-              version={change.version}
-              label="Why"
-              hint="The schedule goes on from today as it was before this change."
-              required
-              button="Take it back"
-              tone="danger"
-              refused={refused}
-            />
-          </Disclosure>
-        )}
-      </Decisions>
+      <Decisions loaderData={loaderData} refused={actionData} />
       <Evidence change={change} verdictNow={verdictNow} />
       <Steps change={change} timeZone={timeZone} />
     </article>
   );
 }
 
-function Decisions({ children }: { children: ReactNode }) {
+type Loaded = Route.ComponentProps['loaderData'];
+
+function Terms({ change, currency, timeZone }: Pick<Loaded, 'change' | 'currency' | 'timeZone'>) {
+  const { action, part, origin, saving } = change;
+  const ifWhole = action === 'trial' && saving !== null ? ', if it held for the whole class' : '';
+  return (
+    <FigureList
+      items={[
+        { name: 'State', value: <StateInWords change={change} timeZone={timeZone} /> },
+        { name: 'Expected saving', value: savingWords(change, currency) + ifWhole },
+        { name: 'How sure', value: sureWords(change) },
+        ...(part.length === 0 ? [] : [{ name: 'Part of the class', value: <Part part={part} /> }]),
+        { name: 'From', value: origin === 'proposal' ? 'the night’s proposal' : 'a number chosen by hand' },
+      ]}
+    />
+  );
+}
+
+function WhatCameOfIt({ change, currency }: Pick<Loaded, 'change' | 'currency'>) {
+  const { followUp, followUpAsOf, clock, state, takesEffectOn } = change;
+  if (followUp !== null && followUpAsOf !== null) {
+    return <FollowUpFigures followUp={followUp} asOf={followUpAsOf} clock={clock} currency={currency} />;
+  }
+  if (state !== 'approved' || takesEffectOn === null) return null;
+  return (
+    <p className="text-grey mt-4">
+      From {formatCalendarDate(takesEffectOn)} on, every night compares what happens with what happened
+      before.
+    </p>
+  );
+}
+
+/** What the viewer can do; below the cautions. */
+function Decisions({ loaderData, refused }: { loaderData: Loaded; refused: Refused }) {
+  const { change, may, isOwn, isManager, today: day } = loaderData;
+  const { version } = change;
   return (
     <section aria-label="Decision" className="no-print mt-6">
-      {children}
+      <TypedInVain may={may} refused={refused} />
+      {may.approve && <ApproveForm version={version} today={day} refused={refused} />}
+      <DeclineOrAsk may={may} version={version} refused={refused} />
+      {isManager && isOwn && openStates.includes(change.state) && (
+        <Notice title="Somebody else decides">
+          You put this forward; another manager has to approve it.
+        </Notice>
+      )}
+      {may.answer && (
+        <WordsForm
+          intent="answer"
+          version={version}
+          label="Your answer"
+          required
+          button="Answer"
+          refused={refused}
+        />
+      )}
+      {may.revise && (
+        <p className="mt-4">
+          <Link
+            to={href('/changes/:changeId/terms', { changeId: change.id })}
+            className="inline-flex min-h-11 items-center"
+          >
+            Put it differently: another interval, part or reason
+          </Link>
+        </p>
+      )}
+      {may.withdraw && <OneButton intent="withdraw" version={version} label="Withdraw" />}
+      {may.reopen && <OneButton intent="reopen" version={version} label="Put it forward again" />}
+      {may.takeBack && (
+        <Disclosure summary="Take it back" open={refused?.initialValue?.intent === 'take-back'}>
+          <WordsForm
+            intent="take-back"
+            version={version}
+            label="Why"
+            hint="The schedule goes on from today as it was before this change."
+            required
+            button="Take it back"
+            tone="danger"
+            refused={refused}
+          />
+        </Disclosure>
+      )}
     </section>
   );
 }
+
+/** Words of a form that is gone, since somebody moved the change on: nothing typed is lost. */
+function TypedInVain({ may, refused }: { may: Loaded['may']; refused: Refused }) {
+  const { intent, words: typed } = refused?.initialValue ?? {};
+  const isShown = Object.entries(formOf).some(([name, form]) => name === intent && may[form]);
+  if (isShown || typeof typed !== 'string' || typed.trim() === '') return null;
+  return (
+    <Notice tone="warning" title="What you typed">
+      <p className="[overflow-wrap:anywhere] whitespace-pre-line">{typed}</p>
+    </Notice>
+  );
+}
+
+const formOf = {
+  decline: 'decline',
+  'ask-back': 'askBack',
+  answer: 'answer',
+  'take-back': 'takeBack',
+} as const satisfies Partial<Record<Intent, keyof Loaded['may']>>;
 
 function OneButton({ intent, version, label }: { intent: Intent; version: number; label: string }) {
   return (

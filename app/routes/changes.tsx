@@ -1,53 +1,38 @@
 import { Form, href, Link } from 'react-router';
-import { z } from 'zod';
 import { changeInWords } from '~/advice/change-words';
 import { Button } from '~/components/button';
 import { followUpNames, savingWords, stateWords } from '~/components/changes/change-words';
+import { changesFilter, changesQuery, changesSearch, type ChangesState } from '~/components/changes/search';
 import { DataTable, type Column } from '~/components/data-table';
 import { EmptyState } from '~/components/empty-state';
 import { Pagination } from '~/components/pagination';
 import { SelectField } from '~/components/select-field';
 import { formatCalendarDate, formatDate } from '~/format/date';
 import { formatNoun, formatPercent } from '~/format/number';
-import type { ChangeRow } from '~/models/schedule-change';
-import { changeGroups, listChanges } from '~/models/schedule-changes.server';
+import { changeSorts, type ChangeRow } from '~/models/schedule-change';
+import { listChanges } from '~/models/schedule-changes.server';
 import { listSites } from '~/models/sites.server';
 import { organisation, requireRole } from '~/services/viewer.server';
 import { database } from '../../db/connection';
 import type { Route } from './+types/changes';
 
 const pageSize = 50;
-const searchSchema = z.object({
-  group: z.enum(changeGroups).optional().catch(undefined),
-  site: z.uuid().optional().catch(undefined),
-  class: z.uuid().optional().catch(undefined),
-  page: z.coerce.number().int().min(1).max(100_000).catch(1),
-});
-type ListState = z.infer<typeof searchSchema>;
 
 export const meta: Route.MetaFunction = () => [{ title: 'Changes · Intervale' }];
 
 export async function loader({ context, request }: Route.LoaderArgs) {
   requireRole(context, request, 'lead', 'manager', 'admin');
-  const state = searchSchema.parse(Object.fromEntries(new URL(request.url).searchParams));
+  const state = changesSearch.parse(Object.fromEntries(new URL(request.url).searchParams));
   const db = database();
   const [{ rows, total }, sites] = await Promise.all([
-    listChanges(db, { ...state, classId: state.class, siteId: state.site, pageSize }),
+    listChanges(db, { ...changesFilter(state), page: state.page, pageSize }),
     listSites(db, 'all'),
   ]);
   const { currency, timeZone } = organisation(context);
   return { rows, total, sites, state, currency, timeZone };
 }
 
-function addressOf(state: ListState): string {
-  const search = new URLSearchParams();
-  if (state.group) search.set('group', state.group);
-  if (state.site) search.set('site', state.site);
-  if (state.class) search.set('class', state.class);
-  if (state.page > 1) search.set('page', String(state.page));
-  const query = search.toString();
-  return href('/changes') + (query && `?${query}`);
-}
+const addressOf = (state: ChangesState) => href('/changes') + changesQuery(state);
 
 export default function Changes({ loaderData }: Route.ComponentProps) {
   const { rows, total, sites, state, currency, timeZone } = loaderData;
@@ -59,11 +44,23 @@ export default function Changes({ loaderData }: Route.ComponentProps) {
         What was put forward for a schedule, what was decided, and what came of it. Those that wait stand
         first.
       </p>
+      {state.class && (
+        <p className="mt-2">
+          Those of {rows[0]?.className ?? 'one class'} alone.{' '}
+          <Link to={href('/changes')}>Of all classes</Link>
+        </p>
+      )}
       <Form
         className="my-4 flex flex-wrap items-end gap-x-5 gap-y-2 [&_button]:mb-4"
         key={JSON.stringify(state)}
       >
         {state.class && <input type="hidden" name="class" value={state.class} />}
+        {state.sort !== 'state' && (
+          <>
+            <input type="hidden" name="sort" value={state.sort} />
+            <input type="hidden" name="direction" value={state.direction} />
+          </>
+        )}
         <SelectField
           label="State"
           name="group"
@@ -93,6 +90,15 @@ export default function Changes({ loaderData }: Route.ComponentProps) {
         columns={columnsIn(currency, timeZone)}
         rows={rows}
         rowKey={({ id }) => id}
+        sort={{ key: state.sort, direction: state.direction }}
+        hrefFor={({ key, direction }) =>
+          addressOf({
+            ...state,
+            sort: changeSorts.find((one) => one === key) ?? 'state',
+            direction,
+            page: 1,
+          })
+        }
         empty={<Nothing isFiltered={isFiltered} />}
       />
       <Pagination
@@ -102,6 +108,17 @@ export default function Changes({ loaderData }: Route.ComponentProps) {
         noun="changes"
         hrefFor={(page) => addressOf({ ...state, page })}
       />
+      {total > 0 && (
+        <p className="no-print">
+          <Link
+            reloadDocument
+            to={href('/changes.csv') + changesQuery({ ...state, page: 1 })}
+            className="inline-flex min-h-11 items-center"
+          >
+            All {formatNoun(total, 'change')} as CSV
+          </Link>
+        </p>
+      )}
     </>
   );
 }
@@ -124,6 +141,7 @@ function columnsIn(currency: string, timeZone: string): Column<ChangeRow>[] {
     {
       key: 'class',
       header: 'Change',
+      sortable: true,
       rowHeader: true,
       cell: ({ id, className, clock, assets, ...change }) => (
         <span className="block md:min-w-48">
@@ -138,9 +156,14 @@ function columnsIn(currency: string, timeZone: string): Column<ChangeRow>[] {
     {
       key: 'saving',
       header: 'Expected saving',
+      sortable: true,
+      firstDirection: 'desc',
       cell: (change) => (
         <>
           {savingWords(change, currency)}
+          {change.action === 'trial' && change.saving !== null && (
+            <span className="text-grey block text-[0.85rem]">if it held for the whole class</span>
+          )}
           {change.share !== null && (
             <span className="text-grey block text-[0.85rem]">sure: {formatPercent(change.share)}</span>
           )}
@@ -148,14 +171,17 @@ function columnsIn(currency: string, timeZone: string): Column<ChangeRow>[] {
       ),
     },
     {
-      key: 'who',
+      key: 'put-forward',
       header: 'Put forward',
+      sortable: true,
+      firstDirection: 'desc',
       cell: ({ putForwardByName, putForwardAt }) =>
         `${putForwardByName}, ${formatDate(putForwardAt, timeZone, 'short')}`,
     },
     {
       key: 'state',
       header: 'State',
+      sortable: true,
       cell: (change) => (
         <>
           <b>{stateWords[change.state]}</b>
@@ -172,7 +198,9 @@ function columnsIn(currency: string, timeZone: string): Column<ChangeRow>[] {
       header: 'What came of it',
       cell: ({ state, followUp, takesEffectOn }) => {
         if (followUp !== null) return followUpNames[followUp.word];
-        if (state !== 'approved' || takesEffectOn === null) return null;
+        if (state !== 'approved' || takesEffectOn === null) {
+          return <span className="text-grey">not in effect</span>;
+        }
         return `in effect from ${formatCalendarDate(takesEffectOn, 'short')}; the next night begins to follow it`;
       },
     },

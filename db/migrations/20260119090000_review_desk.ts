@@ -192,9 +192,10 @@ export async function up(knex: Knex): Promise<void> {
       id bigint generated always as identity primary key,
       change_id uuid not null references schedule_changes (id) on delete cascade,
       step text not null check (step in (
-        'put-forward', 'asked-back', 'answered', 'approved', 'declined', 'withdrawn', 'taken-back'
+        'put-forward', 'asked-back', 'answered', 'revised', 'approved', 'declined', 'withdrawn', 'taken-back'
       )),
-      words text check (length(words) <= 2000),
+      -- 2,000 of the person's own, and of a revision what it was and is.
+      words text check (length(words) <= 2400),
       person_id uuid not null references people (id),
       at timestamptz not null default now()
     );

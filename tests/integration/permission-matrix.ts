@@ -55,6 +55,8 @@ export const permissions: Readonly<Record<string, Permission>> = {
   'routes/year-ahead.tsx': { see: deciders },
   'routes/year-ahead-csv.ts': { see: deciders },
   'routes/changes.tsx': { see: deciders },
+  'routes/changes-csv.ts': { see: deciders },
+  'routes/change-terms.tsx': { see: ['lead'], act: { any: ['lead'] } },
   'routes/change.tsx': {
     see: deciders,
     act: {

@@ -3,7 +3,9 @@ import { afterAll, beforeAll, beforeEach, describe, expect, it, vi } from 'vites
 import type { Role } from '~/models/people.server';
 import { findChange } from '~/models/schedule-changes.server';
 import * as changeRoute from '~/routes/change';
+import * as termsRoute from '~/routes/change-terms';
 import * as changesRoute from '~/routes/changes';
+import * as csvRoute from '~/routes/changes-csv';
 import * as putForwardRoute from '~/routes/class-change';
 import { startSession } from '~/services/session.server';
 import { database, type Database } from '../../db/connection';
@@ -17,7 +19,9 @@ const host = 'http://intervale.test';
 const routes = {
   putForward: { path: 'classes/:classId/change', ...putForwardRoute },
   change: { path: 'changes/:changeId', ...changeRoute },
+  terms: { path: 'changes/:changeId/terms', ...termsRoute },
   list: { path: 'changes', ...changesRoute },
+  csv: { path: 'changes.csv', ...csvRoute },
 };
 const organisation = { timeZone: 'Europe/London', currency: 'GBP', serviceLevel: 0.95 };
 const today = '2026-05-20';
@@ -122,7 +126,7 @@ const send = (fields: Record<string, string>, who = 'lead') =>
   post(routes.putForward, `/classes/${classId}/change`, fields, who);
 async function putForward(differences: Record<string, string> = {}, who = 'lead'): Promise<string> {
   const fields = form(differences);
-  expect((await send(fields, who)).status).toBe(302);
+  expect((await send(fields, who)).headers.get('Location')).toBe(`/changes/${fields.id}`);
   return fields.id;
 }
 async function act(changeId: string, fields: Record<string, string>, who: string, version?: number) {
@@ -134,6 +138,13 @@ async function act(changeId: string, fields: Record<string, string>, who: string
     who,
   );
 }
+const revise = (changeId: string, fields: Record<string, string>, who = 'lead') =>
+  post(
+    routes.terms,
+    `/changes/${changeId}/terms`,
+    { ...form({ id: changeId, version: '1' }), ...fields },
+    who,
+  );
 const errorsOf = async (response: Response) =>
   ((await response.json()) as { error?: Record<string, string[]> }).error ?? {};
 const tasks = () =>
@@ -220,6 +231,21 @@ describe('putting a change forward', () => {
     expect((await errorsOf(await send(form())))['']?.[0]).toContain('was changed meanwhile');
   });
 
+  it('waits for the night after the schedule was changed: its price is of another one', async () => {
+    await db('maintenance_tasks').where('id', taskId).update({ interval_days: 700 });
+    expect((await errorsOf(await send(form())))['']?.[0]).toContain('after the next night');
+  });
+
+  it('waits until a change that is approved has begun', async () => {
+    const id = await putForward();
+    await act(id, { intent: 'approve', day: '2026-06-01' }, 'manager');
+    expect((await errorsOf(await send(form({ interval: '9' }))))['']?.[0]).toContain('ends on 1 June 2026');
+    const page = (await (await get(routes.putForward, `/classes/${classId}/change`, 'lead')).json()) as {
+      endsOn: string;
+    };
+    expect(page.endsOn).toBe('2026-06-01');
+  });
+
   it('shows a statutory class why not, and refuses it', async () => {
     await db('asset_classes').where('id', classId).update({ statutory: true });
     expect((await send(form())).status).toBe(409);
@@ -239,8 +265,9 @@ describe('deciding', () => {
     expect(await findChange(db, id)).toMatchObject({ state: 'approved', takesEffectOn: '2026-06-01' });
     const audited = await db('audit_entries')
       .where('subject', 'maintenance-task')
+      .orderBy('id')
       .select('action', 'before', 'after');
-    expect(audited).toMatchObject([
+    expect(audited.slice(-2)).toMatchObject([
       { action: 'end', after: { endsOn: '2026-06-01' } },
       { action: 'start', after: { interval_days: 365 } },
     ]);
@@ -251,6 +278,12 @@ describe('deciding', () => {
     const response = await act(id, { intent: 'approve', day: '2026-05-19' }, 'manager');
     expect((await errorsOf(response)).day?.[0]).toContain('20 May 2026');
     expect(await tasks()).toHaveLength(1);
+  });
+
+  it('refuses a day that is surely a slip', async () => {
+    const id = await putForward();
+    const response = await act(id, { intent: 'approve', day: '2062-05-21' }, 'manager');
+    expect((await errorsOf(response)).day?.[0]).toContain('20 May 2028');
   });
 
   it('lets nobody approve what they put forward, not even with both roles', async () => {
@@ -296,7 +329,7 @@ describe('deciding', () => {
       error: Record<string, string[]>;
       initialValue: { words: string };
     };
-    expect(answer.error['']?.[0]).toContain('moved this change on');
+    expect(answer.error['']?.[0]).toContain('manager approved it meanwhile');
     expect(answer.initialValue.words).toBe('Too dear.');
   });
 
@@ -310,6 +343,17 @@ describe('deciding', () => {
         .where('id', id)
         .update({ state: 'approved', decided_at: new Date(), takes_effect_on: today }),
     ).rejects.toThrow(/marked_class|not decided here/);
+  });
+
+  it('can still be declined for a class that was marked meanwhile', async () => {
+    const id = await putForward();
+    await db('asset_classes').where('id', classId).update({ statutory: true });
+    const page = (await (await get(routes.change, `/changes/${id}`, 'manager')).json()) as {
+      may: Record<string, boolean>;
+    };
+    expect(page.may).toMatchObject({ approve: false, decline: true });
+    await act(id, { intent: 'decline', words: 'Not ours to decide.' }, 'manager');
+    expect((await findChange(db, id))!.state).toBe('declined');
   });
 
   it('cannot be approved when the schedule is another one by now', async () => {
@@ -350,6 +394,87 @@ describe('deciding', () => {
     const id = await putForward();
     expect((await act(id, { intent, day: today, words: 'x' }, who)).status).toBe(403);
     expect((await findChange(db, id))!.version).toBe(1);
+  });
+});
+
+describe('putting it differently', () => {
+  it('takes new terms and the evidence of today, and waits for a decision again', async () => {
+    const id = await putForward();
+    await act(id, { intent: 'ask-back', words: 'Why not ten?' }, 'manager');
+    await runNightly(db, { asOf: today, organisation });
+    const answer = await revise(id, { interval: '10', reason: 'Ten it is.', version: '2' });
+    expect(answer.headers.get('Location')).toBe(`/changes/${id}`);
+    const change = (await findChange(db, id))!;
+    expect(change).toMatchObject({
+      state: 'put-forward',
+      reason: 'Ten it is.',
+      version: 3,
+      action: 'shorten',
+    });
+    expect(change.to).toBeCloseTo(304.375, 2);
+    expect(change.evidence.asOf).toBe(today);
+    expect(change.steps.at(-1)).toMatchObject({
+      step: 'revised',
+      words:
+        'Before: Shorten from 1\u202f000 days to 12 months. Now: Shorten from 1\u202f000 days to 10 months.\nTen it is.',
+    });
+    const audited = await db('audit_entries')
+      .where({ subject_id: id, action: 'revised' })
+      .first('before', 'after');
+    expect(audited).toMatchObject({
+      before: { state: 'asked-back', to: 365.25 },
+      after: { state: 'put-forward', reason: 'Ten it is.' },
+    });
+    await act(id, { intent: 'approve', day: today }, 'manager');
+    expect(await tasks()).toMatchObject([{}, { interval_days: 304 }]);
+  });
+
+  it('makes a trial of it, and a change of the whole class again', async () => {
+    const id = await putForward();
+    await db('assets')
+      .where('id', assetIds[0])
+      .update({ tag: `DIFF-${count}` });
+    await revise(id, { scope: 'part', tags: `DIFF-${count}` });
+    expect(await findChange(db, id)).toMatchObject({ action: 'trial', part: [{ tag: `DIFF-${count}` }] });
+    await revise(id, { version: '2' });
+    expect(await findChange(db, id)).toMatchObject({ action: 'shorten', part: [] });
+  });
+
+  it('is for who put it forward alone', async () => {
+    const id = await putForward();
+    expect((await errorsOf(await revise(id, {}, 'colleague')))['']?.[0]).toContain('Only the person');
+    for (const who of ['manager', 'admin', 'technician'])
+      expect((await revise(id, {}, who)).status).toBe(403);
+    expect((await findChange(db, id))!.version).toBe(1);
+  });
+
+  it('does not go past a decision, and loses nothing typed', async () => {
+    const id = await putForward();
+    await act(id, { intent: 'approve', day: today }, 'manager');
+    const response = await revise(id, { interval: '10', reason: 'Ten it is.' });
+    expect(response.status).toBe(409);
+    const answer = (await response.json()) as {
+      error: Record<string, string[]>;
+      initialValue: { reason: string };
+    };
+    expect(answer.error['']?.[0]).toContain('moved this change on');
+    expect(answer.initialValue.reason).toBe('Ten it is.');
+    expect((await findChange(db, id))!.to).toBeCloseTo(365.25, 2);
+  });
+
+  it.each([
+    [{ reason: '' }, 'reason', /Say why/],
+    [{ interval: '30', unit: 'years' }, 'interval', /only be tried on a part/],
+    [{ scope: 'part' }, 'tags', /Choose a site/],
+  ])('refuses %j beside its field', async (fields, field, message) => {
+    const id = await putForward();
+    expect((await errorsOf(await revise(id, fields)))[field]?.[0]).toMatch(message);
+  });
+
+  it('refuses a class that was marked meanwhile', async () => {
+    const id = await putForward();
+    await db('asset_classes').where('id', classId).update({ statutory: true });
+    expect((await errorsOf(await revise(id, {})))['']?.[0]).toContain('not put forward here');
   });
 });
 
@@ -407,6 +532,113 @@ describe('in effect', () => {
     ]);
   });
 
+  it('goes back on the very day also where another change is put forward against it already', async () => {
+    const first = await putForward();
+    await act(first, { intent: 'approve', day: today }, 'manager');
+    await runNightly(db, { asOf: today, organisation });
+    const [, made] = (await tasks()) as { id: string }[];
+    const second = await putForward({ taskId: made!.id, interval: '9' });
+    await act(first, { intent: 'take-back', words: 'A mistake.' }, 'manager');
+    expect(await tasks()).toMatchObject([
+      { interval_days: 1000, ends_on: today },
+      { interval_days: 365, ends_on: '2026-05-21' },
+      { interval_days: 1000, starts_on: '2026-05-21', ends_on: null },
+    ]);
+    const response = await act(second, { intent: 'approve', day: '2026-05-21' }, 'manager');
+    expect((await errorsOf(response))['']?.[0]).toContain('put forward anew');
+  });
+
+  it('is not taken back once another change has taken over: that one stays', async () => {
+    const first = await putForward();
+    await act(first, { intent: 'approve', day: today }, 'manager');
+    await runNightly(db, { asOf: today, organisation });
+    const [, made] = (await tasks()) as { id: string }[];
+    vi.stubEnv('INTERVALE_NOW', '2026-05-28T09:00:00Z');
+    const second = await putForward({ taskId: made!.id, interval: '9' });
+    await act(second, { intent: 'approve', day: '2026-05-28' }, 'manager');
+    const before = await tasks();
+    const response = await act(first, { intent: 'take-back', words: 'Too late.' }, 'manager');
+    expect((await errorsOf(response))['']?.[0]).toContain('changed again since');
+    expect(await tasks()).toEqual(before);
+  });
+
+  it('takes a stop back: the rounds begin again', async () => {
+    const id = await putForward({ policy: 'run-to-failure' });
+    await act(id, { intent: 'approve', day: today }, 'manager');
+    vi.stubEnv('INTERVALE_NOW', '2026-05-28T09:00:00Z');
+    await act(id, { intent: 'take-back', words: 'Too many fail.' }, 'manager');
+    expect(await tasks()).toMatchObject([
+      { interval_days: 1000, ends_on: today },
+      { interval_days: 1000, starts_on: '2026-05-28', ends_on: null, replaces_task_id: taskId },
+    ]);
+  });
+
+  it('does not start a schedule before one that is to begin later', async () => {
+    const stop = await putForward({ policy: 'run-to-failure' });
+    await act(stop, { intent: 'approve', day: today }, 'manager');
+    await runNightly(db, { asOf: today, organisation });
+    const later = await putForward({ taskId: '' });
+    await act(later, { intent: 'approve', day: '2026-07-01' }, 'manager');
+    const sooner = await putForward({ taskId: '', interval: '9' });
+    const response = await act(sooner, { intent: 'approve', day: '2026-06-01' }, 'manager');
+    expect((await errorsOf(response))['']?.[0]).toContain('put forward anew');
+    expect(await tasks()).toHaveLength(2);
+  });
+
+  it('follows a trial beside the rest, until the whole class is changed', async () => {
+    for (const [index, assetId] of assetIds.slice(0, 20).entries()) {
+      await db('assets')
+        .where('id', assetId)
+        .update({ tag: `PART-${count}-${index}`, site_id: otherSiteId });
+    }
+    const trial = await putForward({ scope: 'part', tags: '', sites: otherSiteId, interval: '9' });
+    await act(trial, { intent: 'approve', day: today }, 'manager');
+    await addSimulatedRecords(
+      db,
+      seals(`Seal ${count}`),
+      { classId, assetIds },
+      { after: '2026-05-19', until: '2026-06-30' },
+    );
+    await runNightly(db, { asOf: '2026-06-09', organisation });
+    const half = (await findChange(db, trial))!.followUp!;
+    expect(half).toMatchObject({ against: 'rest' });
+    expect(half.after.to - half.after.from).toBe(21);
+    expect(half.after).toMatchObject({ from: half.base.from, to: half.base.to });
+    expect(half.after.exposure).toBeCloseTo(20 * 21, 6);
+
+    vi.stubEnv('INTERVALE_NOW', '2026-06-10T09:00:00Z');
+    const whole = await putForward({ interval: '9' });
+    await act(whole, { intent: 'approve', day: '2026-06-10' }, 'manager');
+    await runNightly(db, { asOf: '2026-06-30', organisation });
+    expect((await findChange(db, trial))!.followUp!.after).toEqual(half.after);
+    const followUp = (await findChange(db, whole))!.followUp!;
+    expect(followUp).toMatchObject({ against: 'before' });
+    expect(followUp.after.to - followUp.after.from).toBe(21);
+  });
+
+  it('ends the follow-up of a change when a later one takes over, and begins there', async () => {
+    const first = await putForward();
+    await act(first, { intent: 'approve', day: today }, 'manager');
+    await runNightly(db, { asOf: today, organisation });
+    const [, made] = (await tasks()) as { id: string }[];
+    vi.stubEnv('INTERVALE_NOW', '2026-06-10T09:00:00Z');
+    const second = await putForward({ taskId: made!.id, interval: '9' });
+    await act(second, { intent: 'approve', day: '2026-06-10' }, 'manager');
+    await runNightly(db, { asOf: '2026-07-31', organisation });
+    const [before, after] = [
+      (await findChange(db, first))!.followUp!,
+      (await findChange(db, second))!.followUp!,
+    ];
+    expect(before.after.to).toBe(after.after.from);
+    expect(after.base).toMatchObject({ from: before.after.from, to: before.after.to });
+    expect(before.sentence).toContain('It was not in force for long enough to say.');
+    vi.stubEnv('INTERVALE_NOW', '2026-06-12T09:00:00Z');
+    await act(second, { intent: 'take-back', words: 'It made it worse.' }, 'manager');
+    await runNightly(db, { asOf: '2026-08-31', organisation });
+    expect((await findChange(db, first))!.followUp!.after).toEqual(before.after);
+    expect((await findChange(db, second))!.followUpAsOf).toBe('2026-07-31');
+  });
+
   it('is followed up every night: too early at first, then it helped', async () => {
     const id = await putForward();
     await act(id, { intent: 'approve', day: today }, 'manager');
@@ -432,5 +664,55 @@ describe('in effect', () => {
 
     await runNightly(db, { asOf: '2026-05-25', organisation });
     expect((await findChange(db, id))!.followUpAsOf).toBe('2026-11-25');
+  });
+});
+
+describe('the list', () => {
+  const rowsOf = async (query: string, who = 'manager') =>
+    (
+      (await (await get(routes.list, `/changes${query}`, who)).json()) as {
+        rows: { id: string }[];
+        total: number;
+      }
+    ).rows.map(({ id }) => id);
+  const refuse = (id: string) => act(id, { intent: 'decline', words: 'No.' }, 'manager');
+
+  it('has what waits first, filters by state, site and class, and sorts', async () => {
+    const declined = await putForward({ interval: '11' });
+    await refuse(declined);
+    vi.stubEnv('INTERVALE_NOW', `${today}T10:00:00Z`);
+    const open = await putForward({ interval: '12' });
+    expect(await rowsOf('')).toEqual([open, declined]);
+    expect(await rowsOf('?direction=desc')).toEqual([declined, open]);
+    expect(await rowsOf('?sort=saving&direction=desc')).toEqual([declined, open]);
+    expect(await rowsOf('?sort=put-forward&direction=asc')).toEqual([declined, open]);
+    expect(await rowsOf('?group=open')).toEqual([open]);
+    expect(await rowsOf('?group=to-decide')).toEqual([open]);
+    expect(await rowsOf('?group=past')).toEqual([declined]);
+    expect(await rowsOf('?group=followed')).toEqual([]);
+    expect(await rowsOf(`?site=${siteId}`)).toHaveLength(2);
+    expect(await rowsOf(`?site=${otherSiteId}`)).toEqual([]);
+    expect(await rowsOf(`?class=${classId}&page=2`)).toEqual([]);
+    expect(await rowsOf('?group=nonsense&sort=nonsense&page=-1')).toHaveLength(2);
+    await act(open, { intent: 'ask-back', words: 'Why?' }, 'manager');
+    expect(await rowsOf('?group=to-decide')).toEqual([]);
+  });
+
+  it('comes as a file with every row of the filter', async () => {
+    await refuse(await putForward({ interval: '11' }));
+    await putForward({ reason: '=1+1, they say' });
+    const lines = (await (await get(routes.csv, '/changes.csv?group=open', 'admin')).text())
+      .trim()
+      .split('\r\n');
+    expect(lines).toHaveLength(2);
+    expect(lines[1]).toContain('Shorten from 1\u202f000 days to 12 months');
+    expect(lines[1]).toContain('waits for a decision');
+    expect(lines[1]).not.toMatch(/,"?=1/);
+  });
+
+  it('is for leads, managers and admins', async () => {
+    for (const who of ['lead', 'manager', 'admin'])
+      expect((await get(routes.list, '/changes', who)).status).toBe(200);
+    expect((await get(routes.list, '/changes', 'technician')).status).toBe(403);
   });
 });

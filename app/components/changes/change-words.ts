@@ -16,6 +16,7 @@ export const stepWords: Record<ChangeStepKind, string> = {
   'put-forward': 'put it forward',
   'asked-back': 'asked back',
   answered: 'answered',
+  revised: 'put it differently',
   approved: 'approved it',
   declined: 'declined it',
   withdrawn: 'withdrew it',
@@ -29,14 +30,16 @@ export const followUpNames: Record<FollowUpWord, string> = {
   worse: 'made it worse',
 };
 
-/** "£2 800 a year (£2 100 to £3 400)", or that it could not be priced. */
+/** "£2 800 a year (£2 100 to £3 400)", what it costs more, or that it could not be priced. */
 export function savingWords({ saving }: Pick<ChangeTerms, 'saving'>, currency: string): string {
   if (saving === null) return 'not priced';
-  const money = (amount: number) => formatRoughMoney(amount, currency);
-  const range = formatInterval(saving.low, saving.high, money);
-  return saving.value < 0
-    ? `costs ${money(-saving.value)} a year more (saving ${range})`
-    : `${money(saving.value)} a year (${range})`;
+  const { value, low, high } = saving;
+  // A minus sign stays with its amount at the end of a line.
+  const money = (amount: number) => formatRoughMoney(amount, currency).replace('\u2212', '\u2212\u2060');
+  if (value >= 0) return `${money(value)} a year (${formatInterval(low, high, money)})`;
+  const range =
+    high <= 0 ? formatInterval(-high, -low, money) : `from ${money(-low)} more to ${money(high)} less`;
+  return `costs ${money(-value)} a year more (${range})`;
 }
 
 /** How sure the saving is. */

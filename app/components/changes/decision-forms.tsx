@@ -49,48 +49,58 @@ export function WordsForm(props: WordsFormProps) {
   );
 }
 
-/** What a manager may do with a change that waits: approve at once, or decline or ask back with some words. */
-export function ManagerForms({
-  version,
-  today,
-  refused,
-}: {
+interface ManagerFormProps {
   version: number;
-  today: string;
   refused: Refused;
-}) {
-  const own = (intent: string) => refused?.initialValue?.intent === intent;
-  const day = own('approve') ? refused?.initialValue?.day : undefined;
+}
+
+const isOf = (refused: Refused, intent: string): boolean => refused?.initialValue?.intent === intent;
+
+/** Approving: two taps, with today as the day unless another is given. */
+export function ApproveForm({ version, today, refused }: ManagerFormProps & { today: string }) {
+  const own = isOf(refused, 'approve') ? refused : undefined;
+  const day = own?.initialValue?.day;
   return (
-    <>
-      <Form method="post" className="mt-4">
-        <input type="hidden" name="version" value={version} />
-        <TextField
-          type="date"
-          name="day"
-          label="From which day"
-          hint="The task’s interval changes on that day; until then everything stays as it is."
-          min={today}
-          defaultValue={typeof day === 'string' ? day : today}
-          errors={own('approve') ? (refused?.error?.day ?? undefined) : undefined}
+    <Form method="post" className="mt-4">
+      <input type="hidden" name="version" value={version} />
+      <TextField
+        type="date"
+        name="day"
+        label="From which day"
+        hint="The task’s interval changes on that day; until then everything stays as it is."
+        min={today}
+        defaultValue={typeof day === 'string' ? day : today}
+        errors={own?.error?.day ?? undefined}
+      />
+      <Button name="intent" value="approve">
+        Approve
+      </Button>
+    </Form>
+  );
+}
+
+/** Saying no, or asking first, each with some words. */
+export function DeclineOrAsk({
+  may,
+  version,
+  refused,
+}: ManagerFormProps & { may: { decline: boolean; askBack: boolean } }) {
+  if (!may.decline) return null;
+  return (
+    <div className="mt-6">
+      <Disclosure summary="Decline" open={isOf(refused, 'decline')}>
+        <WordsForm
+          intent="decline"
+          version={version}
+          label="Why not"
+          required
+          button="Decline"
+          tone="danger"
+          refused={refused}
         />
-        <Button name="intent" value="approve">
-          Approve
-        </Button>
-      </Form>
-      <div className="mt-6">
-        <Disclosure summary="Decline" open={own('decline')}>
-          <WordsForm
-            intent="decline"
-            version={version}
-            label="Why not"
-            required
-            button="Decline"
-            tone="danger"
-            refused={refused}
-          />
-        </Disclosure>
-        <Disclosure summary="Ask back" open={own('ask-back')}>
+      </Disclosure>
+      {may.askBack && (
+        <Disclosure summary="Ask back" open={isOf(refused, 'ask-back')}>
           <WordsForm
             intent="ask-back"
             version={version}
@@ -101,7 +111,7 @@ export function ManagerForms({
             refused={refused}
           />
         </Disclosure>
-      </div>
-    </>
+      )}
+    </div>
   );
 }

@@ -4,7 +4,7 @@ import { FigureList } from '~/components/figure-list';
 import { formatCalendarDate } from '~/format/date';
 import { formatMoney } from '~/format/money';
 import { formatClock, formatFixed, formatInterval, formatNoun } from '~/format/number';
-import { dayOf } from '~/models/day-number';
+import { dayNumber, dayOf } from '~/models/day-number';
 
 interface FollowUpFiguresProps {
   followUp: FollowUp;
@@ -16,7 +16,9 @@ interface FollowUpFiguresProps {
 /** What came of a change: the sentence, then the counts, the test and the cost behind it. */
 export function FollowUpFigures({ followUp, asOf, clock, currency }: FollowUpFiguresProps) {
   const { sentence, base, after, ratio, low, high, cost, against } = followUp;
-  const baseName = against === 'rest' ? 'The rest of the class' : 'Before';
+  const isTrial = against === 'rest';
+  const [baseName, afterName] = isTrial ? ['The rest', 'On trial'] : ['Before', 'Since'];
+  const tookOver = after.to < dayNumber(asOf) + 1 ? dayOf(after.to) : null;
   const money = (amount: number) => formatMoney(Math.round(amount), currency, 'never');
   return (
     <section aria-labelledby="follow-up" className="mt-8">
@@ -25,28 +27,29 @@ export function FollowUpFigures({ followUp, asOf, clock, currency }: FollowUpFig
       <FigureList
         items={[
           { name: baseName, value: <Period period={base} clock={clock} /> },
-          { name: 'Since', value: <Period period={after} clock={clock} /> },
+          { name: afterName, value: <Period period={after} clock={clock} /> },
           {
-            name: 'Failure rate, since over before',
+            name: 'Failure rate',
             value:
               ratio === null
                 ? 'no failure to compare with'
-                : `${formatFixed(ratio, 2)} (${formatInterval(low, high, (end) => formatFixed(end, 2))})`,
+                : `${formatFixed(ratio, 2)} times that of ${isTrial ? 'the rest' : 'before'} (${formatInterval(low, high, (end) => formatFixed(end, 2))})`,
           },
           ...(cost === null
             ? []
             : [
-                { name: `${baseName}, cost an item-year`, value: money(cost.base) },
+                { name: `Cost, ${baseName.toLowerCase()}`, value: `${money(cost.base)} an item-year` },
                 {
-                  name: 'Since, cost an item-year',
-                  value: `${money(cost.after)} (${formatInterval(cost.afterLow, cost.afterHigh, money)})`,
+                  name: `Cost, ${afterName.toLowerCase()}`,
+                  value: `${money(cost.after)} an item-year (${formatInterval(cost.afterLow, cost.afterHigh, money)})`,
                 },
               ]),
         ]}
       />
       <p className="text-grey mt-2 text-[0.92rem]">
-        As of the end of {formatCalendarDate(asOf)}. 90 % exact interval. It knows nothing of what else
-        changed at the same time.
+        As of the end of {formatCalendarDate(asOf)}
+        {tookOver !== null && `; from ${formatCalendarDate(tookOver)} on another change took over`}. 90 %
+        exact interval. It knows nothing of what else changed at the same time.
       </p>
     </section>
   );

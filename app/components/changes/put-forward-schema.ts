@@ -19,6 +19,8 @@ const howMuch = 'Give a number above 0, such as 5 or 2.5.';
 export const putForwardSchema = z
   .object({
     id: z.uuid(),
+    /** Of a change that is put forward already and is to say something else: the version the person saw. */
+    version: z.number().int().optional(),
     taskId: z.uuid().nullable().default(null),
     policy: z.enum(['interval', 'run-to-failure'], { error: 'Say what is to be done.' }),
     interval: z
